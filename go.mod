@@ -1,0 +1,3 @@
+module lanternbook
+
+go 1.26.0
