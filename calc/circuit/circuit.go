@@ -108,6 +108,9 @@ func (c *Circuit) Draw(n Node, amperes float64) { c.load[n] = amperes }
 // SetAir sets the temperature in °C of the air round every part.
 func (c *Circuit) SetAir(celsius float64) { c.air = celsius }
 
+// Air returns the temperature in °C of the air round every part.
+func (c *Circuit) Air() float64 { return c.air }
+
 // Voltage returns a node's voltage in volts at the last solution.
 func (c *Circuit) Voltage(n Node) float64 { return c.v[n] }
 
@@ -170,6 +173,11 @@ func (c *Circuit) SetClamp(id ClampID, volts float64) { c.clamps[id].volts = vol
 
 // ClampCurrent returns the current in amperes a reference takes.
 func (c *Circuit) ClampCurrent(id ClampID) float64 { return c.clamps[id].current }
+
+// ClampPower returns a reference's dissipation in watts.
+func (c *Circuit) ClampPower(id ClampID) float64 {
+	return c.clamps[id].current * c.v[c.clamps[id].n]
+}
 
 // LEDsID names a stack of LEDs in series.
 type LEDsID int
@@ -263,6 +271,25 @@ func (c *Circuit) StackVoltage(id LEDsID, current float64) float64 {
 		total += s.count[k] * s.leds[k].Working(current, c.air).Voltage
 	}
 	return total
+}
+
+// LEDVoltageAt returns what one LED of a stack's type k would stand at, in
+// volts, at a current in amperes in the present air.
+func (c *Circuit) LEDVoltageAt(id LEDsID, k int, current float64) float64 {
+	return c.stacks[id].leds[k].Working(current, c.air).Voltage
+}
+
+// Isothermal keeps every part at the air's temperature from now on, as if it
+// gave off no heat.
+func (c *Circuit) Isothermal() {
+	for i := range c.bjts {
+		c.bjts[i].rth = 0
+	}
+	for i := range c.stacks {
+		for k := range c.stacks[i].leds {
+			c.stacks[i].leds[k].Rth, c.stacks[i].typical[k].Rth = 0, 0
+		}
+	}
 }
 
 // BJTID names a transistor of its circuit.

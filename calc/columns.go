@@ -1,0 +1,65 @@
+package calc
+
+// columns draws every string in three corners: as on a usual day, in the
+// corner that leaves least over on a cold day with a low supply, and in the
+// one that heats the holding part most on a hot day with a high supply.
+func (p *plant) columns(r *Report) error {
+	for i, l := range p.strings {
+		n := len(l.Knobs)
+		usual := make([]float64, n+2)
+		cold, hot := make([]float64, n+2), make([]float64, n+2)
+		for k := range n {
+			cold[k] = float64(l.worst.Lowest[figHeadroom][k])
+			hot[k] = float64(l.worst.Highest[figDevices+2*l.Holder][k])
+		}
+		cold[n], cold[n+1] = -1, -1
+		hot[n], hot[n+1] = 1, 1
+		c := &r.Strings[i].Columns
+		v := p.build.Supply.Voltage
+		for _, at := range []struct {
+			to     *Column
+			turn   []float64
+			supply float64
+		}{{&c.Cold, cold, v.Min}, {&c.Hot, hot, v.Max}, {&c.Usual, usual, v.Typ}} {
+			column, err := l.column(at.turn, at.supply)
+			if isRunaway(err) {
+				continue
+			}
+			if err != nil {
+				return err
+			}
+			*at.to = column
+		}
+		if err := l.toTypical(); err != nil {
+			return err
+		}
+	}
+	return nil
+}
+
+func (l *line) column(turn []float64, supply float64) (Column, error) {
+	l.turnTo(turn)
+	n := len(l.Knobs)
+	at := l.reach.at(turn[n], turn[n+1])
+	if err := l.solveAt(at); err != nil {
+		return Column{}, err
+	}
+	c := Column{Supply: supply, Current: l.Net.LEDCurrent(l.Stack), Heat: l.Power(l.Devices[l.Holder])}
+	left, err := l.headroom(at.volts, at.ohms)
+	if err != nil {
+		return Column{}, err
+	}
+	c.Run = supply - left.feed
+	c.Sense = left.sense
+	if !l.Devices[l.Holder].IsResistor() {
+		c.LeftOver, c.Driver = left.headroom, left.need-left.sense
+	}
+	for _, stack := range l.spec.LEDs {
+		for k := range l.LEDs {
+			if l.LEDs[k].Part == stack.Part {
+				c.LEDs = append(c.LEDs, ColumnLED{Part: stack.Part, Quantity: stack.Quantity, Each: l.Net.LEDVoltageAt(l.Stack, k, left.full)})
+			}
+		}
+	}
+	return c, nil
+}

@@ -1,0 +1,260 @@
+package driver
+
+import (
+	"lanternbook/calc/circuit"
+	"lanternbook/calc/device"
+)
+
+// Range is a value with its limits; Typ lies between Min and Max.
+type Range struct {
+	Min, Typ, Max float64 // in the unit of the field
+}
+
+// LED is Count LEDs of one part in series.
+type LED struct {
+	Part  string
+	Count int
+	Model device.LED
+	Shift Range // [V] of one LED's forward voltage off its typical curve
+}
+
+// Transistor is a transistor with how far its kind may be off.
+type Transistor struct {
+	Part  string
+	Model device.BJT
+	Rth   float64 // [K/W] junction to air; 0 stays at the air's temperature
+	Gain  Range   // [1] as a multiple of the model's
+	VBE   Range   // [V] off the model's
+}
+
+// Resistance is a resistor's value and tolerance.
+type Resistance struct {
+	Ohms      float64 // [Ω]
+	Tolerance float64 // [1] either way
+}
+
+// Reference is what holds a base; see circuit.Clamp.
+type Reference struct {
+	Volts  Range   // [V] at 25 °C
+	Tempco float64 // [V/K]
+	Ohms   float64 // [Ω]
+}
+
+// Assembly is one string as a circuit, ready to solve: hold Feed, set the air,
+// turn the knobs, call Net.Solve.
+type Assembly struct {
+	Net  *circuit.Circuit
+	Feed circuit.Node // the string's positive end, held
+	Tail circuit.Node // lower end of the LEDs
+	// Control, Base and Sense are circuit.None where the driver has none.
+	Control, Base, Sense circuit.Node
+
+	Stack   circuit.LEDsID
+	LEDs    []LED
+	Devices []Device
+	Knobs   []Knob
+
+	// Holder is the index in Devices of the part that holds the current, and
+	// SenseAt that of the resistor which measures it.
+	Holder, SenseAt int
+
+	start func(feed float64)
+}
+
+// Knob is one value of a string that may be off.
+type Knob struct {
+	Name    string // "sense resistor", "white-2835 bin"
+	Culprit Culprit
+	set     func(turn float64)
+}
+
+// Culprit names what kind of spread a knob is.
+type Culprit string
+
+// The culprits.
+const (
+	Bin       Culprit = "bin"       // an LED's forward voltage
+	Gain      Culprit = "gain"      // a transistor's hFE
+	Junction  Culprit = "VBE"       // a transistor's base-emitter voltage
+	Tolerance Culprit = "tolerance" // a resistor
+	Setting   Culprit = "setting"   // a control or reference voltage
+)
+
+// Turn sets a knob between its limits: −1 is the least, 0 typical, 1 the most.
+func (k Knob) Turn(turn float64) { k.set(turn) }
+
+// Typical sets every knob to typical.
+func (a *Assembly) Typical() {
+	for _, k := range a.Knobs {
+		k.set(0)
+	}
+}
+
+// Start sets where a cold solve of the string at a feed voltage starts.
+func (a *Assembly) Start(feed float64) {
+	a.Net.Restart()
+	a.start(feed)
+}
+
+// Device is one part of the string as the report lists it.
+type Device struct {
+	Role string
+	Part string // empty for a resistor
+	kind deviceKind
+	id   int
+}
+
+type deviceKind int
+
+const (
+	isLED deviceKind = iota
+	isBJT
+	isResistor
+	isReference
+)
+
+// Power returns the dissipation in watts of one device at the last solution;
+// of LEDs alike, that of a single one.
+func (a *Assembly) Power(d Device) float64 {
+	switch d.kind {
+	case isLED:
+		return a.Net.LEDCurrent(a.Stack) * a.Net.LEDVoltage(a.Stack, d.id)
+	case isBJT:
+		return a.Net.BJTPower(circuit.BJTID(d.id))
+	case isResistor:
+		return a.Net.ResistorPower(circuit.ResistorID(d.id))
+	default:
+		return a.Net.ClampPower(circuit.ClampID(d.id))
+	}
+}
+
+// Junction returns the device's junction temperature in °C at the last
+// solution; what has no junction is at the air's.
+func (a *Assembly) Junction(d Device) float64 {
+	switch d.kind {
+	case isLED:
+		return a.Net.LEDJunction(a.Stack, d.id)
+	case isBJT:
+		return a.Net.BJTJunction(circuit.BJTID(d.id))
+	default:
+		return a.Net.Air()
+	}
+}
+
+// IsTransistor and IsResistor say what a device is.
+func (d Device) IsTransistor() bool { return d.kind == isBJT }
+
+// IsResistor says whether a device is a resistor.
+func (d Device) IsResistor() bool { return d.kind == isResistor }
+
+// IsLED says whether a device is an LED.
+func (d Device) IsLED() bool { return d.kind == isLED }
+
+// CollectorCurrent and BaseCurrent return a transistor's currents in amperes.
+func (a *Assembly) CollectorCurrent(d Device) float64 {
+	return a.Net.CollectorCurrent(circuit.BJTID(d.id))
+}
+
+// BaseCurrent returns a transistor's base current in amperes.
+func (a *Assembly) BaseCurrent(d Device) float64 { return a.Net.BaseCurrent(circuit.BJTID(d.id)) }
+
+// Current returns the current through a resistor in amperes.
+func (a *Assembly) Current(d Device) float64 {
+	return a.Net.ResistorCurrent(circuit.ResistorID(d.id))
+}
+
+// LEDVolts returns the voltage in volts across all LEDs of the string.
+func (a *Assembly) LEDVolts() float64 {
+	total := 0.0
+	for k := range a.LEDs {
+		total += float64(a.LEDs[k].Count) * a.Net.LEDVoltage(a.Stack, k)
+	}
+	return total
+}
+
+// newAssembly makes the feed, the tail and the LEDs between them.
+func newAssembly(leds []LED) *Assembly {
+	c := circuit.New()
+	a := &Assembly{
+		Net: c, LEDs: leds, Control: circuit.None, Base: circuit.None, Sense: circuit.None,
+		Holder: -1, SenseAt: -1,
+	}
+	a.Feed = c.Held("feed", 0)
+	a.Tail = c.Node("tail")
+	models := make([]device.LED, len(leds))
+	counts := make([]int, len(leds))
+	for k, led := range leds {
+		models[k], counts[k] = led.Model, led.Count
+	}
+	a.Stack = c.LEDs(a.Feed, a.Tail, models, counts)
+	for k, led := range leds {
+		a.Devices = append(a.Devices, Device{Role: "led_" + led.Part, Part: led.Part, kind: isLED, id: k})
+		if led.Shift.Min != 0 || led.Shift.Max != 0 {
+			shift := led.Shift
+			a.knob(led.Part+" bin", Bin, func(turn float64) { c.ShiftLED(a.Stack, k, at(shift, turn)) })
+		}
+	}
+	return a
+}
+
+// at returns a range's value at a turn from −1 to 1.
+func at(r Range, turn float64) float64 {
+	if turn < 0 {
+		return r.Typ + (r.Typ-r.Min)*turn
+	}
+	return r.Typ + (r.Max-r.Typ)*turn
+}
+
+func (a *Assembly) knob(name string, culprit Culprit, set func(turn float64)) {
+	a.Knobs = append(a.Knobs, Knob{Name: name, Culprit: culprit, set: set})
+}
+
+// resistor adds a resistor and its tolerance.
+func (a *Assembly) resistor(role string, from, to circuit.Node, r Resistance) int {
+	id := a.Net.Resistor(from, to, r.Ohms)
+	a.Devices = append(a.Devices, Device{Role: role, kind: isResistor, id: int(id)})
+	if r.Tolerance > 0 {
+		a.knob(roleName(role), Tolerance, func(turn float64) { a.Net.SetOhms(id, r.Ohms*(1+r.Tolerance*turn)) })
+	}
+	return len(a.Devices) - 1
+}
+
+// transistor adds a transistor and its spreads.
+func (a *Assembly) transistor(role string, collector, base, emitter circuit.Node, q Transistor, pnp bool) int {
+	id := a.Net.BJT(collector, base, emitter, q.Model, pnp, q.Rth)
+	a.Devices = append(a.Devices, Device{Role: role, Part: q.Part, kind: isBJT, id: int(id)})
+	gain, vbe := 1.0, 0.0
+	if q.Gain.Min != q.Gain.Max {
+		a.knob(roleName(role)+" gain", Gain, func(turn float64) {
+			gain = at(q.Gain, turn)
+			a.Net.Spread(id, gain, vbe)
+		})
+	}
+	if q.VBE.Min != q.VBE.Max {
+		a.knob(roleName(role)+" VBE", Junction, func(turn float64) {
+			vbe = at(q.VBE, turn)
+			a.Net.Spread(id, gain, vbe)
+		})
+	}
+	return len(a.Devices) - 1
+}
+
+// reference adds a reference and its spread.
+func (a *Assembly) reference(n circuit.Node, r Reference) {
+	id := a.Net.Clamp(n, r.Volts.Typ, r.Ohms, r.Tempco)
+	a.Devices = append(a.Devices, Device{Role: "reference", kind: isReference, id: int(id)})
+	if r.Volts.Min != r.Volts.Max {
+		a.knob("reference", Setting, func(turn float64) { a.Net.SetClamp(id, at(r.Volts, turn)) })
+	}
+}
+
+// roleName returns a role in words: "sink_transistor" is "sink transistor".
+func roleName(role string) string {
+	b := []byte(role)
+	for i := range b {
+		if b[i] == '_' {
+			b[i] = ' '
+		}
+	}
+	return string(b)
+}

@@ -1,0 +1,271 @@
+package calc
+
+import (
+	"math"
+
+	"lanternbook/calc/heat"
+	"lanternbook/calc/spread"
+)
+
+// The figures of one string, in the order of its vector; behind them stand
+// each device's power and junction temperature in turn.
+const (
+	figCurrent  = iota // [A] through the LEDs
+	figLEDVolts        // [V] across all of them
+	figHeadroom        // [V]
+	figFlux            // [lm]
+	figDraw            // [A] from the feed
+	figFeed            // [V]
+	figDrive           // [A] that bias or pull-up bring to the base
+	figSpare           // [A] left for follower, sensor or reference
+	figDevices
+)
+
+// corner is where a string is solved: the voltage behind its cable, the
+// temperatures, and how its knobs stand.
+type corner struct {
+	volts   float64 // [V] ideal voltage behind ohms
+	ohms    float64 // [Ω]
+	ambient float64 // [°C] outside
+	inside  float64 // [°C] round the parts
+}
+
+// collect reads the string's figures at its present operating point into out.
+func (l *line) collect(out []float64) {
+	net := l.Net
+	out[figCurrent] = net.LEDCurrent(l.Stack)
+	out[figLEDVolts] = l.LEDVolts()
+	out[figDraw] = l.draw()
+	out[figFeed] = net.Voltage(l.Feed)
+	out[figFlux] = l.flux()
+	out[figDrive], out[figSpare] = l.drive()
+	for k, d := range l.Devices {
+		out[figDevices+2*k] = l.Power(d)
+		out[figDevices+2*k+1] = l.Junction(d)
+	}
+}
+
+// figures is how many figures the string has.
+func (l *line) figures() int { return figDevices + 2*len(l.Devices) }
+
+// flux is the string's light in lumens; NaN where it is not known.
+func (l *line) flux() float64 {
+	current := l.Net.LEDCurrent(l.Stack)
+	total := 0.0
+	for k, source := range l.lights {
+		if source.Flux == 0 {
+			return math.NaN()
+		}
+		each, ok := source.At(current, l.Net.LEDJunction(l.Stack, k))
+		if !ok {
+			return math.NaN()
+		}
+		total += each * float64(l.LEDs[k].Count)
+	}
+	return total
+}
+
+// drive is the current in amperes that bias or pull-up bring, and what of it
+// the sink's base leaves over.
+func (l *line) drive() (brings, spare float64) {
+	k := l.driveResistor()
+	if k < 0 {
+		return 0, 0
+	}
+	brings = l.Current(l.Devices[k])
+	return brings, brings - l.BaseCurrent(l.Devices[l.Holder])
+}
+
+// driveResistor is the index of the resistor that feeds the base, or −1.
+func (l *line) driveResistor() int {
+	for k, d := range l.Devices {
+		if d.Role == "bias_resistor" || d.Role == "pullup_resistor" {
+			return k
+		}
+	}
+	return -1
+}
+
+// worst is a string's figures with their worst cases.
+type worst struct {
+	*spread.Extremes
+	fluxKnown bool
+	runaway   error // a corner without a stable temperature
+}
+
+// reach is how far the world outside the string may move it.
+type reach struct {
+	volts           Spread // [V] behind the string's own share of the cable
+	ambient, inside Spread // [°C]
+	ohms            [3]float64
+}
+
+// between returns a spread's value at a turn from −1 to 1.
+func between(s Spread, turn float64) float64 {
+	if turn < 0 {
+		return s.Typ + (s.Typ-s.Min)*turn
+	}
+	return s.Typ + (s.Max-s.Typ)*turn
+}
+
+// at returns the corner of a reach at turns of the supply and of the ambient.
+func (r *reach) at(supply, ambient float64) corner {
+	c := corner{volts: between(r.volts, supply), ambient: between(r.ambient, ambient), inside: between(r.inside, ambient)}
+	c.ohms = r.ohms[1]
+	if ambient < 0 {
+		c.ohms += (r.ohms[1] - r.ohms[0]) * ambient
+	} else {
+		c.ohms += (r.ohms[2] - r.ohms[1]) * ambient
+	}
+	return c
+}
+
+// solveAt solves the string in a corner with its knobs as they stand.
+func (l *line) solveAt(c corner) error {
+	l.Net.SetAir(c.inside)
+	return l.behind(c.volts, c.ohms, 0)
+}
+
+// turnTo turns the string's knobs; the last two turns are supply and ambient.
+func (l *line) turnTo(turn []float64) {
+	for k, knob := range l.Knobs {
+		if l.turned[k] != turn[k] {
+			knob.Turn(turn[k])
+			l.turned[k] = turn[k]
+		}
+	}
+}
+
+// extremes finds the worst case of every figure over the string's own knobs,
+// the supply and the ambient. A corner in which a part runs away thermally is
+// kept as that and left out of the figures.
+func (l *line) extremes(r reach, withHeadroom bool) (worst, error) {
+	w := worst{fluxKnown: true}
+	knobs := len(l.Knobs) + 2
+	count := l.figures()
+	eval := func(turn, out []float64) error {
+		l.turnTo(turn)
+		c := r.at(turn[knobs-2], turn[knobs-1])
+		if err := l.solveAt(c); err != nil {
+			if !isRunaway(err) {
+				return err
+			}
+			w.runaway = err
+			for f := range out {
+				out[f] = math.NaN()
+			}
+			return nil
+		}
+		l.collect(out)
+		w.fluxKnown = w.fluxKnown && !math.IsNaN(out[figFlux])
+		out[figHeadroom] = math.NaN()
+		if !withHeadroom {
+			return nil
+		}
+		left, err := l.headroom(c.volts, c.ohms)
+		if err != nil && !isRunaway(err) {
+			return err
+		}
+		if err == nil {
+			out[figHeadroom] = left.headroom
+		}
+		return nil
+	}
+	var err error
+	w.Extremes, err = spread.Find(knobs, count, eval)
+	if err != nil {
+		return w, err
+	}
+	return w, l.toTypical()
+}
+
+// toTypical turns every knob back.
+func (l *line) toTypical() error {
+	for k, knob := range l.Knobs {
+		knob.Turn(0)
+		l.turned[k] = 0
+	}
+	return nil
+}
+
+// reaches finds how far supply, cable and the other strings may move each
+// string's feed. With nothing shared that is the supply's own spread. With
+// cable or source resistance the whole build is solved twice more: every
+// string drawing its most from the lowest supply over hot copper, and its
+// least from the highest over cold copper; each string's own share of the drop
+// is taken out again, since the string carries it along.
+func (p *plant) reaches(air Spread) ([]reach, error) {
+	b := p.build
+	out := make([]reach, len(p.strings))
+	for i := range out {
+		out[i] = reach{volts: b.Supply.Voltage, ambient: b.Ambient, inside: air}
+	}
+	if !p.coupled() {
+		return out, nil
+	}
+	for side, ambient := range []float64{b.Ambient.Min, b.Ambient.Typ, b.Ambient.Max} {
+		p.heatWires(ambient)
+		for i, l := range p.strings {
+			out[i].ohms[side] = l.path
+		}
+	}
+	p.heatWires(b.Ambient.Typ)
+	for i, l := range p.strings {
+		out[i].volts.Typ = l.Net.Voltage(l.Feed) + l.path*l.draw()
+	}
+	draws := make([]*spread.Extremes, len(p.strings))
+	for i, l := range p.strings {
+		r := out[i]
+		r.volts = Spread{Min: b.Supply.Voltage.Min, Typ: b.Supply.Voltage.Typ, Max: b.Supply.Voltage.Max}
+		w, err := l.extremes(r, false)
+		if err != nil {
+			return nil, err
+		}
+		draws[i] = w.Extremes
+	}
+	for _, end := range []struct {
+		volts, ambient, air float64
+		pick                func(x *spread.Extremes) []int8
+		set                 func(r *reach, v float64)
+	}{
+		{b.Supply.Voltage.Min, b.Ambient.Max, air.Max, func(x *spread.Extremes) []int8 { return x.Highest[figDraw] }, func(r *reach, v float64) { r.volts.Min = math.Min(v, r.volts.Typ) }},
+		{b.Supply.Voltage.Max, b.Ambient.Min, air.Min, func(x *spread.Extremes) []int8 { return x.Lowest[figDraw] }, func(r *reach, v float64) { r.volts.Max = math.Max(v, r.volts.Typ) }},
+	} {
+		p.heatWires(end.ambient)
+		for i, l := range p.strings {
+			turn := make([]float64, len(l.Knobs))
+			for k := range turn {
+				turn[k] = float64(end.pick(draws[i])[k])
+			}
+			l.turnTo(turn)
+		}
+		if err := p.settle(end.volts, end.air); err != nil {
+			return nil, err
+		}
+		for i, l := range p.strings {
+			end.set(&out[i], l.Net.Voltage(l.Feed)+l.path*l.draw())
+		}
+	}
+	p.heatWires(b.Ambient.Typ)
+	for _, l := range p.strings {
+		if err := l.toTypical(); err != nil {
+			return nil, err
+		}
+	}
+	return out, nil
+}
+
+// insideSpread returns the air round the parts for a heat in watts that goes
+// from least to most.
+func (p *plant) insideSpread(least, typ, most float64) Spread {
+	a := p.build.Ambient
+	area, transfer, sealed := p.sealed()
+	if !sealed {
+		return Spread{Min: a.Min, Typ: a.Typ, Max: a.Max}
+	}
+	return Spread{
+		Min: a.Min + heat.EnclosureRise(least, area, transfer),
+		Typ: a.Typ + heat.EnclosureRise(typ, area, transfer),
+		Max: a.Max + heat.EnclosureRise(most, area, transfer),
+	}
+}

@@ -1,0 +1,226 @@
+package calc
+
+import (
+	"errors"
+	"fmt"
+	"math"
+
+	"lanternbook/calc/circuit"
+	"lanternbook/calc/heat"
+)
+
+// Unsolved says that a string has no operating point that could be found.
+type Unsolved struct {
+	String string // its label
+	Cause  error
+}
+
+// Error names the string and the cause.
+func (u *Unsolved) Error() string { return fmt.Sprintf("string %s: %v", u.String, u.Cause) }
+
+// Unwrap returns the cause.
+func (u *Unsolved) Unwrap() error { return u.Cause }
+
+const (
+	// treeRest is the step in volts at which strings and cable agree.
+	treeRest = 1e-7
+	// treePatience is how often strings and cable are solved in turn.
+	treePatience = 60
+	// airRest is the step in kelvin at which heat and a can's air agree.
+	airRest = 1e-5
+	// held is the share of the full current that still counts as holding it.
+	held = 0.99
+)
+
+// coupled says whether strings share any resistance.
+func (p *plant) coupled() bool { return p.tree.Source > 0 || len(p.tree.Parent) > 0 }
+
+// operate solves the whole build at a supply voltage in volts and an outside
+// temperature in °C, with the strings' knobs as they stand. It returns the
+// temperature inside.
+func (p *plant) operate(volts, ambient float64) (inside float64, err error) {
+	p.heatWires(ambient)
+	area, transfer, sealed := p.sealed()
+	inside = ambient
+	for range treePatience {
+		if err := p.settle(volts, inside); err != nil {
+			return inside, err
+		}
+		if !sealed {
+			return inside, nil
+		}
+		next := ambient + heat.EnclosureRise(p.heatInside(), area, transfer)
+		if math.Abs(next-inside) < airRest {
+			return next, nil
+		}
+		inside = next
+	}
+	return inside, &Unsolved{"(all)", errors.New("the air in the can finds no stable temperature")}
+}
+
+func (p *plant) sealed() (area, transfer float64, ok bool) {
+	e := p.build.Enclosure
+	if e == nil || e.Kind != "sealed" || e.SurfaceArea == nil || e.HeatTransfer == nil {
+		return 0, 0, false
+	}
+	return *e.SurfaceArea, *e.HeatTransfer, true
+}
+
+// heatInside is what the strings turn into heat, their light counted as heat
+// too, in watts.
+func (p *plant) heatInside() float64 {
+	total := 0.0
+	for _, l := range p.strings {
+		total += l.quantity * l.draw() * l.Net.Voltage(l.Feed)
+	}
+	return total
+}
+
+// settle solves strings and cable together in air of a given temperature.
+func (p *plant) settle(volts, air float64) error {
+	for _, l := range p.strings {
+		l.Net.SetAir(air)
+		if err := l.at(l.feedGuess(volts)); err != nil {
+			return err
+		}
+	}
+	if !p.coupled() {
+		for _, l := range p.strings {
+			if l.Net.Voltage(l.Feed) != volts {
+				if err := l.at(volts); err != nil {
+					return err
+				}
+			}
+		}
+		p.result.Supply = volts
+		p.result.Total = 0
+		for _, l := range p.strings {
+			p.result.Total += l.quantity * l.draw()
+		}
+		return nil
+	}
+	for range treePatience {
+		for i, l := range p.strings {
+			p.loads[i].Volts = l.Net.Voltage(l.Feed)
+			p.loads[i].Current = l.quantity * l.draw()
+			p.loads[i].Slope = math.Max(0, l.quantity*l.Net.HeldSlope(l.Feed))
+		}
+		p.tree.Solve(volts, p.loads, &p.result)
+		moved := 0.0
+		for _, l := range p.strings {
+			feed := p.result.Supply
+			if l.run >= 0 {
+				feed = p.result.Volts[l.run]
+			}
+			moved = math.Max(moved, math.Abs(feed-l.Net.Voltage(l.Feed)))
+			if err := l.at(feed); err != nil {
+				return err
+			}
+		}
+		if moved < treeRest {
+			return nil
+		}
+	}
+	return &Unsolved{"(all)", errors.New("strings and cable do not settle")}
+}
+
+// feedGuess is where the search for a string's feed starts: where it was, if
+// that is near.
+func (l *line) feedGuess(volts float64) float64 {
+	if v := l.Net.Voltage(l.Feed); l.path > 0 && math.Abs(v-volts) < 0.3*volts {
+		return v
+	}
+	return volts
+}
+
+// at solves the string with its feed at a voltage in volts.
+func (l *line) at(feed float64) error {
+	if !l.started {
+		l.Start(feed)
+		l.started = true
+	}
+	l.Net.Hold(l.Feed, feed)
+	if err := l.Net.Solve(); err != nil {
+		l.started = false
+		return &Unsolved{l.spec.Label, err}
+	}
+	return nil
+}
+
+// behind solves the string with its feed behind a resistance in ohms from an
+// ideal voltage in volts; extra in amperes is drawn at the feed besides.
+func (l *line) behind(volts, ohms, extra float64) error {
+	if ohms == 0 {
+		return l.at(volts)
+	}
+	feed := l.Net.Voltage(l.Feed)
+	if math.Abs(feed-volts) > 0.3*math.Abs(volts) {
+		feed = volts - ohms*extra
+	}
+	for range treePatience {
+		if err := l.at(feed); err != nil {
+			return err
+		}
+		miss := feed - volts + ohms*(l.draw()+extra)
+		step := -miss / (1 + ohms*math.Max(0, l.Net.HeldSlope(l.Feed)))
+		feed += step
+		if math.Abs(step) < treeRest {
+			return nil
+		}
+	}
+	return &Unsolved{l.spec.Label, errors.New("string and cable do not settle")}
+}
+
+// draw is what one string takes from its feed in amperes.
+func (l *line) draw() float64 { return l.Net.HeldCurrent(l.Feed) }
+
+// leftOver is a string's headroom with what it is made of.
+type leftOver struct {
+	headroom float64 // [V]
+	full     float64 // [A] the current it would hold
+	feed     float64 // [V] at that current
+	need     float64 // [V] least across the driver at which 99 % of it still flow
+	sense    float64 // [V] of that across the sense resistor
+}
+
+// headroom finds what is left over at the string's present operating point,
+// which stands behind a resistance in ohms from an ideal voltage in volts, and
+// leaves the string as it was. The full current is what flows with the
+// collector no lower than the base, where a transistor is in its active region.
+func (l *line) headroom(volts, ohms float64) (leftOver, error) {
+	net := l.Net
+	if l.Base == circuit.None {
+		across := net.Voltage(l.Tail)
+		return leftOver{headroom: across, full: net.LEDCurrent(l.Stack), feed: net.Voltage(l.Feed), need: across, sense: across}, nil
+	}
+	net.Save(&l.saved)
+	defer net.Load(&l.saved)
+	r := leftOver{full: net.LEDCurrent(l.Stack), feed: net.Voltage(l.Feed)}
+	available := net.Voltage(l.Tail)
+	net.Detach(l.Stack)
+	if base := net.Voltage(l.Base); available < base {
+		for range treePatience {
+			net.Hold(l.Tail, base)
+			if err := l.behind(volts, ohms, r.full); err != nil {
+				return r, err
+			}
+			full := net.HeldCurrent(l.Tail)
+			moved := math.Abs(net.Voltage(l.Base)-base) + ohms*math.Abs(full-r.full)
+			r.full, base = full, net.Voltage(l.Base)
+			if moved < treeRest {
+				break
+			}
+		}
+		r.feed = net.Voltage(l.Feed)
+		available = r.feed - net.StackVoltage(l.Stack, r.full)
+	}
+	net.Hold(l.Feed, r.feed)
+	net.Release(l.Tail, math.Max(0, net.Voltage(l.Sense)+0.1))
+	net.Draw(l.Tail, -held*r.full)
+	if err := net.Solve(); err != nil {
+		return r, &Unsolved{l.spec.Label, err}
+	}
+	r.need, r.sense = net.Voltage(l.Tail), net.Voltage(l.Sense)
+	r.headroom = available - r.need
+	return r, nil
+}

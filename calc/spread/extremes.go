@@ -1,0 +1,149 @@
+// Package spread finds what tolerances do to a figure. It knows nothing of
+// circuits: it turns knobs between −1 and 1 and looks at numbers.
+package spread
+
+// Extremes is the worst case of several figures over several knobs.
+type Extremes struct {
+	Min, Typ, Max []float64 // in the unit of each figure
+
+	// Lowest and Highest are each figure's corner: for every knob −1, 1, or 0
+	// where it does not matter.
+	Lowest, Highest [][]int8
+
+	turn  []float64
+	tried map[string]bool
+	out   []float64
+	eval  Eval
+}
+
+// Eval computes every figure into out with the knobs at turn.
+type Eval func(turn, out []float64) error
+
+// Find returns the worst case of figures over knobs by extreme value analysis:
+// the sign of every figure's sensitivity to every knob is found one knob at a
+// time, the two extreme combinations of every figure are solved outright, and
+// each is then tried with every knob turned over, until nothing is worse. It
+// stops at the first error of eval.
+//
+// Source: ecss-q-hb-30-01a, extreme value analysis.
+func Find(knobs, figures int, eval Eval) (*Extremes, error) {
+	x := &Extremes{
+		Min: make([]float64, figures), Typ: make([]float64, figures), Max: make([]float64, figures),
+		Lowest: make([][]int8, figures), Highest: make([][]int8, figures),
+		turn: make([]float64, knobs), out: make([]float64, figures),
+		tried: map[string]bool{}, eval: eval,
+	}
+	typical := make([]int8, knobs)
+	if err := x.eval(x.turn, x.out); err != nil {
+		return nil, err
+	}
+	copy(x.Min, x.out)
+	copy(x.Typ, x.out)
+	copy(x.Max, x.out)
+	for f := range figures {
+		x.Lowest[f], x.Highest[f] = typical, typical
+	}
+	up := make([][]int8, figures)
+	for f := range up {
+		up[f] = make([]int8, knobs)
+	}
+	low := make([]float64, figures)
+	for k := range knobs {
+		corner := make([]int8, knobs)
+		corner[k] = -1
+		if err := x.try(corner); err != nil {
+			return nil, err
+		}
+		copy(low, x.out)
+		corner = make([]int8, knobs)
+		corner[k] = 1
+		if err := x.try(corner); err != nil {
+			return nil, err
+		}
+		for f := range figures {
+			up[f][k] = sign(x.out[f] - low[f])
+		}
+	}
+	for f := range figures {
+		if err := x.climb(f, up[f], 1); err != nil {
+			return nil, err
+		}
+		if err := x.climb(f, up[f], -1); err != nil {
+			return nil, err
+		}
+	}
+	return x, nil
+}
+
+// climb tries a figure's corner and then turns each knob over.
+func (x *Extremes) climb(f int, up []int8, way int8) error {
+	corner := make([]int8, len(up))
+	for k, s := range up {
+		corner[k] = s * way
+	}
+	if err := x.try(corner); err != nil {
+		return err
+	}
+	for range rounds {
+		best := x.Highest[f]
+		if way < 0 {
+			best = x.Lowest[f]
+		}
+		for k := range up {
+			next := append([]int8(nil), best...)
+			next[k] = -next[k]
+			if next[k] == 0 {
+				next[k] = 1
+			}
+			if err := x.try(next); err != nil {
+				return err
+			}
+		}
+		now := x.Highest[f]
+		if way < 0 {
+			now = x.Lowest[f]
+		}
+		if &now[0] == &best[0] {
+			break
+		}
+	}
+	return nil
+}
+
+// rounds is how often a corner is improved; one round confirms.
+const rounds = 4
+
+// try solves a corner, once, and takes what is worse than anything before.
+func (x *Extremes) try(corner []int8) error {
+	key := make([]byte, len(corner))
+	for k, s := range corner {
+		key[k] = byte(s + 1)
+		x.turn[k] = float64(s)
+	}
+	if x.tried[string(key)] {
+		return nil
+	}
+	x.tried[string(key)] = true
+	if err := x.eval(x.turn, x.out); err != nil {
+		return err
+	}
+	for f, v := range x.out {
+		if v < x.Min[f] {
+			x.Min[f], x.Lowest[f] = v, corner
+		}
+		if v > x.Max[f] {
+			x.Max[f], x.Highest[f] = v, corner
+		}
+	}
+	return nil
+}
+
+func sign(v float64) int8 {
+	switch {
+	case v > 0:
+		return 1
+	case v < 0:
+		return -1
+	}
+	return 0
+}
