@@ -54,6 +54,9 @@ type Assembly struct {
 	Devices []Device
 	Knobs   []Knob
 
+	// Source is the node that the control voltage holds; circuit.None without.
+	Source circuit.Node
+
 	// Holder is the index in Devices of the part that holds the current, and
 	// SenseAt that of the resistor which measures it.
 	Holder, SenseAt int
@@ -163,6 +166,11 @@ func (a *Assembly) Current(d Device) float64 {
 	return a.Net.ResistorCurrent(circuit.ResistorID(d.id))
 }
 
+// SetSense changes the resistor that measures the current, in ohms.
+func (a *Assembly) SetSense(ohms float64) {
+	a.Net.SetOhms(circuit.ResistorID(a.Devices[a.SenseAt].id), ohms)
+}
+
 // LEDVolts returns the voltage in volts across all LEDs of the string.
 func (a *Assembly) LEDVolts() float64 {
 	total := 0.0
@@ -176,7 +184,7 @@ func (a *Assembly) LEDVolts() float64 {
 func newAssembly(leds []LED) *Assembly {
 	c := circuit.New()
 	a := &Assembly{
-		Net: c, LEDs: leds, Control: circuit.None, Base: circuit.None, Sense: circuit.None,
+		Net: c, LEDs: leds, Control: circuit.None, Base: circuit.None, Sense: circuit.None, Source: circuit.None,
 		Holder: -1, SenseAt: -1,
 	}
 	a.Feed = c.Held("feed", 0)

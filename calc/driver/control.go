@@ -21,6 +21,7 @@ func (a *Assembly) control(ctl Control) circuit.Node {
 		return n
 	}
 	source := c.Held("control", ctl.Volts.Typ)
+	a.Source = source
 	if ctl.Volts.Min != ctl.Volts.Max {
 		a.knob("control voltage", Setting, func(turn float64) { c.Hold(source, at(ctl.Volts, turn)) })
 	}

@@ -1,0 +1,152 @@
+package calc
+
+import (
+	"fmt"
+	"strings"
+
+	"lanternbook/calc/heat"
+)
+
+// checkHeat verifies currents, voltages and heat of every part of a string.
+func (b *book) checkHeat(l *line, s *StringReport) {
+	for k, d := range l.Devices {
+		switch {
+		case d.IsLED():
+			b.checkLED(l, s, k)
+		case d.IsTransistor():
+			b.checkTransistor(l, s, k)
+		case d.IsResistor():
+			b.checkResistor(l, s, k)
+		}
+	}
+}
+
+func (b *book) checkLED(l *line, s *StringReport, k int) {
+	key := l.Devices[k].Part
+	part := b.p.build.Parts[key].LED
+	most := s.Current.Max
+	f := Finding{Code: "led-current", Where: l.where(), At: l.pointer("/leds"), Value: &most, Limit: part.MaxCurrent, Unit: "A", Source: sourceRating}
+	if part.MaxCurrent == nil {
+		b.missing(f, "greatest current (max_current)", key)
+	} else {
+		f.Severity = atMost(most, *part.MaxCurrent, tightRating)
+		f.Message = fmt.Sprintf("%s: at most %s of %s", key, amps(most), amps(*part.MaxCurrent))
+		f.Working = fmt.Sprintf("worst-case string current %s against the rated %s", amps(most), amps(*part.MaxCurrent))
+		b.add(f)
+	}
+	b.checkJunction(l, s, k, "led-junction", part.MaxJunction, part.RthJunctionAmbient)
+}
+
+func (b *book) checkJunction(l *line, s *StringReport, k int, code string, limit, rth *float64) {
+	d := &s.Devices[k]
+	hottest := d.Junction.Max
+	f := Finding{Code: code, Where: l.where(), At: l.pointer("/driver"), Value: &hottest, Limit: limit, Unit: "°C",
+		Source: "Tj = Tair + Rth · P; franco, ex. 11.14; limit: " + sourceRating}
+	name := l.name(k)
+	switch {
+	case rth == nil:
+		f.Value = nil
+		b.missing(f, "thermal resistance to the air (rth_junction_ambient)", d.Part)
+		return
+	case limit == nil:
+		b.missing(f, "greatest junction temperature (max_junction)", d.Part)
+		return
+	}
+	margin := b.p.limitMargin()
+	switch {
+	case hottest > *limit:
+		f.Severity = Fail
+	case hottest > *limit-margin:
+		f.Severity = Tight
+	default:
+		f.Severity = Pass
+	}
+	f.Message = fmt.Sprintf("%s: junction up to %s of %s", name, celsius(hottest), celsius(*limit))
+	f.Working = fmt.Sprintf("air up to %s + %.4g K/W × %s = %s; %.0f K should stay below the rating",
+		celsius(b.r.Supply.Inside.Max), *rth, watts(d.Power.Max), celsius(hottest), margin)
+	b.add(f)
+}
+
+// name names a device in words with its part.
+func (l *line) name(k int) string {
+	d := l.Devices[k]
+	if d.IsLED() || d.Part == "" {
+		return strings.ReplaceAll(strings.TrimPrefix(d.Role, "led_"), "_", " ")
+	}
+	return strings.ReplaceAll(d.Role, "_", " ") + " " + d.Part
+}
+
+func (b *book) checkTransistor(l *line, s *StringReport, k int) {
+	d := &s.Devices[k]
+	part := b.p.build.Parts[d.Part].Transistor
+	name := l.name(k)
+	most := d.Power.Max
+	air := b.r.Supply.Inside.Max
+	f := Finding{Code: "transistor-power", Where: l.where(), At: l.pointer("/driver"), Value: &most, Unit: "W",
+		Source: "linear derating; malvino, ex. 12-14; limit: " + sourceRating}
+	switch {
+	case part.MaxPower != nil && part.MaxJunction != nil:
+		limit := heat.Derated(*part.MaxPower, 25, *part.MaxJunction, air)
+		f.Limit = &limit
+		f.Severity = atMost(most, limit, tightPower)
+		f.Message = fmt.Sprintf("%s: up to %s of the %s allowed in air of %s", name, watts(most), watts(limit), celsius(air))
+		f.Working = fmt.Sprintf("%s at 25 °C falls to nothing at %s: at %s it is %s", watts(*part.MaxPower), celsius(*part.MaxJunction), celsius(air), watts(limit))
+		b.add(f)
+	case part.MaxPower == nil:
+		b.missing(f, "rated dissipation (max_power)", d.Part)
+	default:
+		b.missing(f, "greatest junction temperature (max_junction)", d.Part)
+	}
+	b.checkJunction(l, s, k, "transistor-junction", part.MaxJunction, part.RthJunctionAmbient)
+	if k != l.Holder {
+		return
+	}
+	b.checkRating(l, "transistor-voltage", part.MaxCollectorEmitterVoltage, b.p.build.Supply.Voltage.Max, "V", volts,
+		name+" with the LEDs dark", d.Part, "collector-emitter rating (max_collector_emitter_voltage)",
+		"with the LEDs dark or shorted nothing but the transistor stands against the supply at its highest")
+	b.checkRating(l, "transistor-current", part.MaxCollectorCurrent, s.Current.Max, "A", amps,
+		name, d.Part, "collector current rating (max_collector_current)", "worst-case string current")
+}
+
+func (b *book) checkRating(l *line, code string, limit *float64, value float64, unit string, text func(float64) string, name, part, figure, working string) {
+	f := Finding{Code: code, Where: l.where(), At: l.pointer("/driver"), Value: &value, Limit: limit, Unit: unit, Source: sourceRating}
+	if limit == nil {
+		b.missing(f, figure, part)
+		return
+	}
+	f.Severity = atMost(value, *limit, tightRating)
+	f.Message = fmt.Sprintf("%s: up to %s of %s", name, text(value), text(*limit))
+	f.Working = fmt.Sprintf("%s: %s against %s", working, text(value), text(*limit))
+	b.add(f)
+}
+
+func (b *book) checkResistor(l *line, s *StringReport, k int) {
+	d := &s.Devices[k]
+	name := strings.ReplaceAll(d.Role, "_", " ")
+	r := l.spec.resistor(d.Role)
+	if r == nil {
+		return // a pot's track is judged with the pot
+	}
+	most := d.Power.Max
+	f := Finding{Code: "resistor-power", Where: l.where(), At: l.pointer("/driver" + resistorPath(d.Role)), Value: &most, Limit: r.Watts, Unit: "W",
+		Source: "P = V²/R; 60 % of the rating, " + sourcePractice}
+	if r.Watts == nil {
+		b.missing(f, "rating (watts)", "the "+name)
+		return
+	}
+	f.Severity = atMost(most, *r.Watts, tightResistor)
+	f.Message = fmt.Sprintf("%s %s: up to %s of %s", name, ohmic(r.Ohms), watts(most), watts(*r.Watts))
+	f.Working = fmt.Sprintf("worst case %s is %s of the rating %s", watts(most), percent(100*most / *r.Watts), watts(*r.Watts))
+	b.add(f)
+}
+
+// resistorPath is where a resistor stands below its driver.
+func resistorPath(role string) string {
+	switch role {
+	case "resistor":
+		return "/resistor"
+	case "upper_resistor", "lower_resistor":
+		return "/control/divider/" + strings.TrimSuffix(role, "_resistor")
+	}
+	return "/" + strings.TrimSuffix(role, "_resistor")
+}
