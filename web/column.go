@@ -238,9 +238,6 @@ func holder(b calc.Build, i int) string {
 	return partName(key, b.Parts[key])
 }
 
-// leastHeadroom is what a build without a limit of its own is asked to have
-// left over. [V]
-const leastHeadroom = 0.3
 
 // leftOver says what is left over in this corner, and how that is to be seen:
 // "pass", "tight" when it is less than the shop asks for, "fail" below 0.
@@ -248,7 +245,7 @@ func leftOver(b calc.Build, r calc.StringReport, c calc.Column) (outcome, words 
 	if r.Kind == calc.KindResistor {
 		return string(calc.Pass), quantity.Format(c.LeftOver+c.Sense, quantity.Volt, 3) + " on the resistor"
 	}
-	limit := leastHeadroom
+	limit := calc.DefaultHeadroom
 	if b.Limits != nil && b.Limits.Headroom != nil {
 		limit = *b.Limits.Headroom
 	}
