@@ -152,3 +152,12 @@ func (u unit) resolve(suffix string) (spelling, bool) {
 	}
 	return spelling{}, false
 }
+
+// Words returns what a unit is called in a sentence, "volts", and the name
+// itself where it is none of this package's.
+func Words(name string) string {
+	if u, ok := lookup(name); ok {
+		return u.words
+	}
+	return name
+}
