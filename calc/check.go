@@ -138,7 +138,7 @@ func (p *plant) worstCases(r *Report, inside float64) error {
 		}
 		var least, most float64
 		for i, l := range p.strings {
-			if l.worst, err = l.extremes(reaches[i], round == rounds-1); err != nil {
+			if l.worst, err = l.extremes(reaches[i]); err != nil {
 				return err
 			}
 			l.reach = reaches[i]

@@ -85,7 +85,7 @@ func (b *book) checkHeadroom(l *line, s *StringReport) {
 	for _, led := range c.LEDs {
 		leds += float64(led.Quantity) * led.Each
 	}
-	f.Working = fmt.Sprintf("supply − run − LEDs − driver = left over: %s − %s − %s − %s = %s (cold, low supply, dearest bin; the driver's share is what it needs to hold 99 %% of its current)",
+	f.Working = fmt.Sprintf("supply − run − LEDs − driver = left over: %s − %s − %s − %s = %s (cold, low supply, every part at its worst; the driver's share is what it needs to hold 99 %% of its current)",
 		volts(c.Supply), volts(c.Run), volts(leds), volts(c.Driver+c.Sense), volts(c.LeftOver))
 	b.add(f)
 }

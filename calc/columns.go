@@ -30,9 +30,7 @@ func (p *plant) columns(r *Report) error {
 			}
 			*at.to = column
 		}
-		if err := l.toTypical(); err != nil {
-			return err
-		}
+		l.toTypical()
 	}
 	return nil
 }

@@ -4,7 +4,6 @@ import (
 	"fmt"
 	"sort"
 
-	"lanternbook/calc/circuit"
 	"lanternbook/calc/device"
 	"lanternbook/calc/driver"
 	"lanternbook/calc/light"
@@ -40,7 +39,7 @@ type line struct {
 	lights   []light.Source // by LED group; a zero flux is not known
 	assumed  []string       // parts whose figures were assumed, in words
 	started  bool
-	saved    circuit.State
+	saved    driver.State
 	turned   []float64 // how the knobs stand
 	typ      []float64 // figures with everything typical
 	worst    worst

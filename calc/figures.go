@@ -35,7 +35,7 @@ func (l *line) collect(out []float64) {
 	net := l.Net
 	out[figCurrent] = net.LEDCurrent(l.Stack)
 	out[figLEDVolts] = l.LEDVolts()
-	out[figDraw] = l.draw()
+	out[figDraw] = l.Draw()
 	out[figFeed] = net.Voltage(l.Feed)
 	out[figFlux] = l.flux()
 	out[figDrive], out[figSpare] = l.drive()
@@ -123,7 +123,7 @@ func (r *reach) at(supply, ambient float64) corner {
 // solveAt solves the string in a corner with its knobs as they stand.
 func (l *line) solveAt(c corner) error {
 	l.Net.SetAir(c.inside)
-	return l.behind(c.volts, c.ohms, 0)
+	return l.behindOf(c.volts, c.ohms, 0)
 }
 
 // turnTo turns the string's knobs; the last two turns are supply and ambient.
@@ -139,53 +139,86 @@ func (l *line) turnTo(turn []float64) {
 // extremes finds the worst case of every figure over the string's own knobs,
 // the supply and the ambient. A corner in which a part runs away thermally is
 // kept as that and left out of the figures.
-func (l *line) extremes(r reach, withHeadroom bool) (worst, error) {
+func (l *line) extremes(r reach) (worst, error) {
 	w := worst{fluxKnown: true}
-	knobs := len(l.Knobs) + 2
-	count := l.figures()
-	eval := func(turn, out []float64) error {
-		l.turnTo(turn)
-		c := r.at(turn[knobs-2], turn[knobs-1])
-		if err := l.solveAt(c); err != nil {
-			if !isRunaway(err) {
-				return err
-			}
-			w.runaway = err
-			for f := range out {
-				out[f] = math.NaN()
-			}
-			return nil
+	var err error
+	w.Extremes, err = spread.Find(len(l.Knobs)+2, l.figures(), func(turn, out []float64) error {
+		_, ok, err := l.corner(&w, r, turn)
+		if !ok {
+			fillNaN(out)
+			return err
 		}
 		l.collect(out)
 		w.fluxKnown = w.fluxKnown && !math.IsNaN(out[figFlux])
-		out[figHeadroom] = math.NaN()
-		if !withHeadroom {
-			return nil
-		}
-		left, err := l.headroom(c.volts, c.ohms)
-		if err != nil && !isRunaway(err) {
-			return err
-		}
-		if err == nil {
-			out[figHeadroom] = left.headroom
-		}
 		return nil
-	}
-	var err error
-	w.Extremes, err = spread.Find(knobs, count, eval)
+	})
 	if err != nil {
 		return w, err
 	}
-	return w, l.toTypical()
+	// What is left over costs several solutions; it gets a search of its own.
+	left, err := spread.Find(len(l.Knobs)+2, 1, func(turn, out []float64) error {
+		c, ok, err := l.corner(&w, r, turn)
+		fillNaN(out)
+		if !ok {
+			return err
+		}
+		left, err := l.headroom(c.volts, c.ohms)
+		if isRunaway(err) {
+			return nil
+		}
+		out[0] = left.headroom
+		return err
+	})
+	if err != nil {
+		return w, err
+	}
+	w.Min[figHeadroom], w.Typ[figHeadroom], w.Max[figHeadroom] = left.Min[0], left.Typ[0], left.Max[0]
+	w.Lowest[figHeadroom], w.Highest[figHeadroom] = left.Lowest[0], left.Highest[0]
+	l.toTypical()
+	return w, nil
+}
+
+// drawExtremes is extremes for the current from the feed alone.
+func (l *line) drawExtremes(r reach) (*spread.Extremes, error) {
+	var w worst
+	x, err := spread.Find(len(l.Knobs)+2, 1, func(turn, out []float64) error {
+		_, ok, err := l.corner(&w, r, turn)
+		fillNaN(out)
+		if ok {
+			out[0] = l.Draw()
+		}
+		return err
+	})
+	l.toTypical()
+	return x, err
+}
+
+// corner solves the string with its knobs, supply and ambient turned; ok is
+// false where it runs away.
+func (l *line) corner(w *worst, r reach, turn []float64) (c corner, ok bool, err error) {
+	l.turnTo(turn)
+	n := len(l.Knobs)
+	c = r.at(turn[n], turn[n+1])
+	err = l.solveAt(c)
+	if isRunaway(err) {
+		w.runaway = err
+		return c, false, nil
+	}
+	return c, err == nil, err
+}
+
+func fillNaN(out []float64) {
+	for f := range out {
+		out[f] = math.NaN()
+	}
 }
 
 // toTypical turns every knob back.
-func (l *line) toTypical() error {
+func (l *line) toTypical() {
 	for k, knob := range l.Knobs {
 		knob.Turn(0)
 		l.turned[k] = 0
 	}
-	return nil
 }
 
 // reaches finds how far supply, cable and the other strings may move each
@@ -211,25 +244,25 @@ func (p *plant) reaches(air Spread) ([]reach, error) {
 	}
 	p.heatWires(b.Ambient.Typ)
 	for i, l := range p.strings {
-		out[i].volts.Typ = l.Net.Voltage(l.Feed) + l.path*l.draw()
+		out[i].volts.Typ = l.Net.Voltage(l.Feed) + l.path*l.Draw()
 	}
 	draws := make([]*spread.Extremes, len(p.strings))
 	for i, l := range p.strings {
 		r := out[i]
 		r.volts = Spread{Min: b.Supply.Voltage.Min, Typ: b.Supply.Voltage.Typ, Max: b.Supply.Voltage.Max}
-		w, err := l.extremes(r, false)
+		x, err := l.drawExtremes(r)
 		if err != nil {
 			return nil, err
 		}
-		draws[i] = w.Extremes
+		draws[i] = x
 	}
 	for _, end := range []struct {
 		volts, ambient, air float64
 		pick                func(x *spread.Extremes) []int8
 		set                 func(r *reach, v float64)
 	}{
-		{b.Supply.Voltage.Min, b.Ambient.Max, air.Max, func(x *spread.Extremes) []int8 { return x.Highest[figDraw] }, func(r *reach, v float64) { r.volts.Min = math.Min(v, r.volts.Typ) }},
-		{b.Supply.Voltage.Max, b.Ambient.Min, air.Min, func(x *spread.Extremes) []int8 { return x.Lowest[figDraw] }, func(r *reach, v float64) { r.volts.Max = math.Max(v, r.volts.Typ) }},
+		{b.Supply.Voltage.Min, b.Ambient.Max, air.Max, func(x *spread.Extremes) []int8 { return x.Highest[0] }, func(r *reach, v float64) { r.volts.Min = math.Min(v, r.volts.Typ) }},
+		{b.Supply.Voltage.Max, b.Ambient.Min, air.Min, func(x *spread.Extremes) []int8 { return x.Lowest[0] }, func(r *reach, v float64) { r.volts.Max = math.Max(v, r.volts.Typ) }},
 	} {
 		p.heatWires(end.ambient)
 		for i, l := range p.strings {
@@ -243,14 +276,12 @@ func (p *plant) reaches(air Spread) ([]reach, error) {
 			return nil, err
 		}
 		for i, l := range p.strings {
-			end.set(&out[i], l.Net.Voltage(l.Feed)+l.path*l.draw())
+			end.set(&out[i], l.Net.Voltage(l.Feed)+l.path*l.Draw())
 		}
 	}
 	p.heatWires(b.Ambient.Typ)
 	for _, l := range p.strings {
-		if err := l.toTypical(); err != nil {
-			return nil, err
-		}
+		l.toTypical()
 	}
 	return out, nil
 }

@@ -28,6 +28,14 @@ const (
 	treePatience = 60
 	// airRest is the step in kelvin at which heat and a can's air agree.
 	airRest = 1e-5
+	// baseRest is the step in volts at which a tail held at the base's voltage
+	// has found it.
+	baseRest = 1e-4
+	// needRest is the step in volts at which the least voltage is found.
+	needRest = 1e-4
+	// usualSaturation is the collector-emitter voltage in volts from which the
+	// search for the least one starts.
+	usualSaturation = 0.15
 	// held is the share of the full current that still counts as holding it.
 	held = 0.99
 )
@@ -71,7 +79,7 @@ func (p *plant) sealed() (area, transfer float64, ok bool) {
 func (p *plant) heatInside() float64 {
 	total := 0.0
 	for _, l := range p.strings {
-		total += l.quantity * l.draw() * l.Net.Voltage(l.Feed)
+		total += l.quantity * l.Draw() * l.Net.Voltage(l.Feed)
 	}
 	return total
 }
@@ -95,14 +103,14 @@ func (p *plant) settle(volts, air float64) error {
 		p.result.Supply = volts
 		p.result.Total = 0
 		for _, l := range p.strings {
-			p.result.Total += l.quantity * l.draw()
+			p.result.Total += l.quantity * l.Draw()
 		}
 		return nil
 	}
 	for range treePatience {
 		for i, l := range p.strings {
 			p.loads[i].Volts = l.Net.Voltage(l.Feed)
-			p.loads[i].Current = l.quantity * l.draw()
+			p.loads[i].Current = l.quantity * l.Draw()
 			p.loads[i].Slope = math.Max(0, l.quantity*l.Net.HeldSlope(l.Feed))
 		}
 		p.tree.Solve(volts, p.loads, &p.result)
@@ -139,7 +147,7 @@ func (l *line) at(feed float64) error {
 		l.Start(feed)
 		l.started = true
 	}
-	l.Net.Hold(l.Feed, feed)
+	l.FeedAt(feed)
 	if err := l.Net.Solve(); err != nil {
 		l.started = false
 		return &Unsolved{l.spec.Label, err}
@@ -147,32 +155,23 @@ func (l *line) at(feed float64) error {
 	return nil
 }
 
-// behind solves the string with its feed behind a resistance in ohms from an
+// behindOf solves the string with its feed behind a resistance in ohms from an
 // ideal voltage in volts; extra in amperes is drawn at the feed besides.
-func (l *line) behind(volts, ohms, extra float64) error {
+func (l *line) behindOf(volts, ohms, extra float64) error {
 	if ohms == 0 {
 		return l.at(volts)
 	}
-	feed := l.Net.Voltage(l.Feed)
-	if math.Abs(feed-volts) > 0.3*math.Abs(volts) {
-		feed = volts - ohms*extra
+	if !l.started {
+		l.Start(volts)
+		l.started = true
 	}
-	for range treePatience {
-		if err := l.at(feed); err != nil {
-			return err
-		}
-		miss := feed - volts + ohms*(l.draw()+extra)
-		step := -miss / (1 + ohms*math.Max(0, l.Net.HeldSlope(l.Feed)))
-		feed += step
-		if math.Abs(step) < treeRest {
-			return nil
-		}
+	l.FeedBehind(volts, ohms, extra)
+	if err := l.Net.Solve(); err != nil {
+		l.started = false
+		return &Unsolved{l.spec.Label, err}
 	}
-	return &Unsolved{l.spec.Label, errors.New("string and cable do not settle")}
+	return nil
 }
-
-// draw is what one string takes from its feed in amperes.
-func (l *line) draw() float64 { return l.Net.HeldCurrent(l.Feed) }
 
 // leftOver is a string's headroom with what it is made of.
 type leftOver struct {
@@ -186,41 +185,79 @@ type leftOver struct {
 // headroom finds what is left over at the string's present operating point,
 // which stands behind a resistance in ohms from an ideal voltage in volts, and
 // leaves the string as it was. The full current is what flows with the
-// collector no lower than the base, where a transistor is in its active region.
+// collector at the base, the edge of a transistor's active region: a higher
+// collector adds a little by its Early effect and by its heat, which no string
+// needs.
 func (l *line) headroom(volts, ohms float64) (leftOver, error) {
 	net := l.Net
 	if l.Base == circuit.None {
 		across := net.Voltage(l.Tail)
 		return leftOver{headroom: across, full: net.LEDCurrent(l.Stack), feed: net.Voltage(l.Feed), need: across, sense: across}, nil
 	}
-	net.Save(&l.saved)
-	defer net.Load(&l.saved)
+	l.Save(&l.saved)
+	defer l.Load(&l.saved)
 	r := leftOver{full: net.LEDCurrent(l.Stack), feed: net.Voltage(l.Feed)}
-	available := net.Voltage(l.Tail)
+	base, short := net.Voltage(l.Base), net.Voltage(l.Tail) < net.Voltage(l.Base)
 	net.Detach(l.Stack)
-	if base := net.Voltage(l.Base); available < base {
-		for range treePatience {
-			net.Hold(l.Tail, base)
-			if err := l.behind(volts, ohms, r.full); err != nil {
+	if !short {
+		l.FeedAt(r.feed)
+	}
+	for range treePatience {
+		net.Hold(l.Tail, base)
+		if short {
+			// The full current does not flow, so neither does its drop.
+			if err := l.behindOf(volts, ohms, r.full); err != nil {
 				return r, err
 			}
-			full := net.HeldCurrent(l.Tail)
-			moved := math.Abs(net.Voltage(l.Base)-base) + ohms*math.Abs(full-r.full)
-			r.full, base = full, net.Voltage(l.Base)
-			if moved < treeRest {
-				break
-			}
+		} else if err := net.Solve(); err != nil {
+			return r, &Unsolved{l.spec.Label, err}
 		}
-		r.feed = net.Voltage(l.Feed)
-		available = r.feed - net.StackVoltage(l.Stack, r.full)
+		full := net.HeldCurrent(l.Tail)
+		moved := math.Abs(net.Voltage(l.Base) - base)
+		if short {
+			moved += ohms * math.Abs(full-r.full)
+		}
+		r.full, base = full, net.Voltage(l.Base)
+		if moved < baseRest {
+			break
+		}
 	}
-	net.Hold(l.Feed, r.feed)
-	net.Release(l.Tail, math.Max(0, net.Voltage(l.Sense)+0.1))
-	net.Draw(l.Tail, -held*r.full)
-	if err := net.Solve(); err != nil {
-		return r, &Unsolved{l.spec.Label, err}
+	r.feed = net.Voltage(l.Feed)
+	available := r.feed - net.StackVoltage(l.Stack, r.full)
+	l.FeedAt(r.feed)
+	if err := l.findNeed(&r, base); err != nil {
+		return r, err
 	}
-	r.need, r.sense = net.Voltage(l.Tail), net.Voltage(l.Sense)
 	r.headroom = available - r.need
 	return r, nil
+}
+
+// findNeed lowers the tail, with the LEDs detached, until the current has lost
+// 1 %: Newton's method kept inside a bracket whose upper end holds it.
+func (l *line) findNeed(r *leftOver, high float64) error {
+	net := l.Net
+	low, want := 0.0, held*r.full
+	try := math.Min(high, net.Voltage(l.Sense)+usualSaturation)
+	for range treePatience {
+		net.Hold(l.Tail, try)
+		if err := net.Solve(); err != nil {
+			return &Unsolved{l.spec.Label, err}
+		}
+		miss := net.HeldCurrent(l.Tail) - want
+		if miss < 0 {
+			low = try
+		} else {
+			high = try
+		}
+		next := try - miss/net.HeldSlope(l.Tail)
+		if !(next > low && next < high) {
+			next = (low + high) / 2
+		}
+		if math.Abs(next-try) < needRest {
+			break
+		}
+		try = next
+	}
+	r.need, r.sense = net.Voltage(l.Tail), net.Voltage(l.Sense)
+	return nil
 }

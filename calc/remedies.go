@@ -23,6 +23,9 @@ const (
 	mostRemedies = 4
 	// mostTries is how far along a series of values an edit goes.
 	mostTries = 8
+	// worthwhile is the least share of its miss by which an edit that does not
+	// cure a finding must better it.
+	worthwhile = 0.05
 	// smallBuild is the number of strings up to which a change of the supply is
 	// tried on the whole build.
 	smallBuild = 60
@@ -90,7 +93,7 @@ func better(before, after *Finding) bool {
 		return false
 	}
 	gain := margin(after) - margin(before)
-	return gain > 1e-3*(1+math.Abs(margin(before)))
+	return gain > worthwhile*(1+math.Abs(margin(before)))
 }
 
 // margin is how far a value is on the good side of its limit.

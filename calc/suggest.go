@@ -57,7 +57,7 @@ func Suggest(b Build, i int) (Suggestion, error) {
 		return Suggestion{}, err
 	}
 	l := p.strings[i]
-	t := tuner{l: l, at: corner{volts: l.Net.Voltage(l.Feed) + l.path*l.draw(), ohms: l.path, ambient: b.Ambient.Typ, inside: inside}}
+	t := tuner{l: l, at: corner{volts: l.Net.Voltage(l.Feed) + l.path*l.Draw(), ohms: l.path, ambient: b.Ambient.Typ, inside: inside}}
 	w := b.Strings[i].Wanted
 	t.light = w.Current == nil
 	if t.light {

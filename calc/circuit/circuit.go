@@ -126,6 +126,9 @@ func (c *Circuit) Resistor(a, b Node, ohms float64) ResistorID {
 // SetOhms changes a resistance, in ohms above 0.
 func (c *Circuit) SetOhms(id ResistorID, ohms float64) { c.resistors[id].ohms = ohms }
 
+// Switch puts a resistor into the circuit or takes it out.
+func (c *Circuit) Switch(id ResistorID, on bool) { c.resistors[id].off = !on }
+
 // Ohms returns a resistance in ohms.
 func (c *Circuit) Ohms(id ResistorID) float64 { return c.resistors[id].ohms }
 

@@ -60,9 +60,11 @@ func (s *ledStack) settle(vab float64) float64 {
 //	F2 = vbc − Vbc + rb·ib − rc·ic
 //	F3 = T − Tair − rth·(ib·Vbe + ic·Vce)
 func (q *bjt) step(air, tvbe, tvbc float64) {
-	if !q.fresh || q.at.Celsius() != q.t {
+	if !q.fresh {
 		q.at = q.par.At(q.t)
 		q.fresh = true
+	} else if q.at.Celsius() != q.t {
+		q.at.Move(&q.par, q.t)
 	}
 	n := q.at.Currents(q.vbe, q.vbc)
 	rb, re, rc := q.par.Rb, q.par.Re, q.par.Rc

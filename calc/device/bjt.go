@@ -39,6 +39,9 @@ type BJTAt struct {
 	invKr, ne, nc, xtb       float64
 	critE, critC             float64
 	hasIse, hasIsc, rollsOff bool
+
+	// Logarithms of the critical voltages' arguments at NominalC.
+	lnE, lnC float64
 }
 
 // At returns the transistor at a junction temperature, by SPICE's laws
@@ -51,12 +54,20 @@ type BJTAt struct {
 //
 // Source: antognetti, temperature dependence of the BJT model.
 func (b *BJT) At(celsius float64) BJTAt {
-	var a BJTAt
-	a.set(b, celsius)
+	nominal := ThermalVoltage(NominalC)
+	a := BJTAt{
+		lnE: math.Log(b.Nf * nominal / (math.Sqrt2 * b.Is)), lnC: math.Log(b.Nr * nominal / (math.Sqrt2 * b.Is)),
+		hasIse: b.Ise > 0, hasIsc: b.Isc > 0, ne: b.Ne, nc: b.Nc, xtb: b.Xtb,
+		invVaf: inverse(b.Vaf), invVar: inverse(b.Var), invKf: inverse(b.Ikf), invKr: inverse(b.Ikr),
+	}
+	a.rollsOff = a.invKf != 0 || a.invKr != 0
+	a.Move(b, celsius)
 	return a
 }
 
-func (a *BJTAt) set(b *BJT, celsius float64) {
+// Move takes the transistor that At returned to another junction temperature,
+// with the same parameters.
+func (a *BJTAt) Move(b *BJT, celsius float64) {
 	kelvin := celsius + Zero
 	ratio := kelvin / (NominalC + Zero)
 	logRatio := math.Log(ratio)
@@ -69,7 +80,6 @@ func (a *BJTAt) set(b *BJT, celsius float64) {
 	a.celsius, a.kelvin, a.vt = celsius, kelvin, vt
 	a.is = b.Is * math.Exp(logIs)
 	a.bf, a.br = b.Bf*gain, b.Br*gain
-	a.hasIse, a.hasIsc = b.Ise > 0, b.Isc > 0
 	if a.hasIse {
 		a.ise = b.Ise * math.Exp(logIs/b.Ne) / gain
 	}
@@ -78,11 +88,8 @@ func (a *BJTAt) set(b *BJT, celsius float64) {
 	}
 	a.nvf, a.nvr, a.nve, a.nvc = b.Nf*vt, b.Nr*vt, b.Ne*vt, b.Nc*vt
 	a.slope = b.Eg/(vt*kelvin) + b.Xti/kelvin
-	a.invVaf, a.invVar, a.invKf, a.invKr = inverse(b.Vaf), inverse(b.Var), inverse(b.Ikf), inverse(b.Ikr)
-	a.rollsOff = a.invKf != 0 || a.invKr != 0
-	a.ne, a.nc, a.xtb = b.Ne, b.Nc, b.Xtb
-	a.critE = a.nvf * math.Log(a.nvf/(math.Sqrt2*a.is))
-	a.critC = a.nvr * math.Log(a.nvr/(math.Sqrt2*a.is))
+	a.critE = a.nvf * (a.lnE + logRatio - logIs)
+	a.critC = a.nvr * (a.lnC + logRatio - logIs)
 }
 
 // Celsius returns the junction temperature a was made for, in °C.

@@ -61,7 +61,11 @@ type Assembly struct {
 	// SenseAt that of the resistor which measures it.
 	Holder, SenseAt int
 
-	start func(feed float64)
+	start    func(feed float64)
+	upstream circuit.Node
+	cable    circuit.ResistorID
+	behind   bool
+	extra    float64 // [A] drawn at the feed besides
 }
 
 // Knob is one value of a string that may be off.
@@ -85,6 +89,59 @@ const (
 
 // Turn sets a knob between its limits: −1 is the least, 0 typical, 1 the most.
 func (k Knob) Turn(turn float64) { k.set(turn) }
+
+// FeedAt holds the string's feed at a voltage in volts.
+func (a *Assembly) FeedAt(volts float64) {
+	if a.behind {
+		a.Net.Switch(a.cable, false)
+		a.Net.Draw(a.Feed, 0)
+		a.behind, a.extra = false, 0
+	}
+	a.Net.Hold(a.Feed, volts)
+}
+
+// FeedBehind feeds the string through a resistance in ohms, above 0, from an
+// ideal voltage in volts; extra in amperes is drawn at the feed besides.
+func (a *Assembly) FeedBehind(volts, ohms, extra float64) {
+	a.Net.Hold(a.upstream, volts)
+	a.Net.SetOhms(a.cable, ohms)
+	a.Net.Draw(a.Feed, extra)
+	a.extra = extra
+	if !a.behind {
+		a.Net.Switch(a.cable, true)
+		a.Net.Release(a.Feed, a.Net.Voltage(a.Feed))
+		a.behind = true
+	}
+}
+
+// Draw returns what the string takes from its feed in amperes, without what is
+// drawn there besides.
+func (a *Assembly) Draw() float64 {
+	if a.behind {
+		return a.Net.ResistorCurrent(a.cable) - a.extra
+	}
+	return a.Net.HeldCurrent(a.Feed)
+}
+
+// State is a solution of the string to come back to.
+type State struct {
+	net    circuit.State
+	behind bool
+	extra  float64
+}
+
+// Save keeps the string's solution and feed, Load puts it back.
+func (a *Assembly) Save(s *State) {
+	a.Net.Save(&s.net)
+	s.behind, s.extra = a.behind, a.extra
+}
+
+// Load puts the string back to what Save kept.
+func (a *Assembly) Load(s *State) {
+	a.Net.Load(&s.net)
+	a.behind, a.extra = s.behind, s.extra
+	a.Net.Switch(a.cable, a.behind)
+}
 
 // Typical sets every knob to typical.
 func (a *Assembly) Typical() {
@@ -187,7 +244,10 @@ func newAssembly(leds []LED) *Assembly {
 		Net: c, LEDs: leds, Control: circuit.None, Base: circuit.None, Sense: circuit.None, Source: circuit.None,
 		Holder: -1, SenseAt: -1,
 	}
+	a.upstream = c.Held("upstream", 0)
 	a.Feed = c.Held("feed", 0)
+	a.cable = c.Resistor(a.upstream, a.Feed, 1)
+	c.Switch(a.cable, false)
 	a.Tail = c.Node("tail")
 	models := make([]device.LED, len(leds))
 	counts := make([]int, len(leds))

@@ -2,6 +2,8 @@
 // circuits: it turns knobs between −1 and 1 and looks at numbers.
 package spread
 
+import "math"
+
 // Extremes is the worst case of several figures over several knobs.
 type Extremes struct {
 	Min, Typ, Max []float64 // in the unit of each figure
@@ -10,10 +12,11 @@ type Extremes struct {
 	// where it does not matter.
 	Lowest, Highest [][]int8
 
-	turn  []float64
-	tried map[string]bool
-	out   []float64
-	eval  Eval
+	effect [][]float64 // by figure and knob: most less least, that knob alone
+	turn   []float64
+	tried  map[string]bool
+	out    []float64
+	eval   Eval
 }
 
 // Eval computes every figure into out with the knobs at turn.
@@ -21,9 +24,11 @@ type Eval func(turn, out []float64) error
 
 // Find returns the worst case of figures over knobs by extreme value analysis:
 // the sign of every figure's sensitivity to every knob is found one knob at a
-// time, the two extreme combinations of every figure are solved outright, and
-// each is then tried with every knob turned over, until nothing is worse. It
-// stops at the first error of eval.
+// time, and the two extreme combinations of every figure are solved outright.
+// Where a combination departs from the sum of the single effects, every knob
+// whose effect is no larger than that departure may have changed its sign
+// there: it is turned over and tried, until nothing is worse. Find stops at
+// the first error of eval.
 //
 // Source: ecss-q-hb-30-01a, extreme value analysis.
 func Find(knobs, figures int, eval Eval) (*Extremes, error) {
@@ -31,7 +36,7 @@ func Find(knobs, figures int, eval Eval) (*Extremes, error) {
 		Min: make([]float64, figures), Typ: make([]float64, figures), Max: make([]float64, figures),
 		Lowest: make([][]int8, figures), Highest: make([][]int8, figures),
 		turn: make([]float64, knobs), out: make([]float64, figures),
-		tried: map[string]bool{}, eval: eval,
+		tried: map[string]bool{}, eval: eval, effect: make([][]float64, figures),
 	}
 	typical := make([]int8, knobs)
 	if err := x.eval(x.turn, x.out); err != nil {
@@ -42,10 +47,7 @@ func Find(knobs, figures int, eval Eval) (*Extremes, error) {
 	copy(x.Max, x.out)
 	for f := range figures {
 		x.Lowest[f], x.Highest[f] = typical, typical
-	}
-	up := make([][]int8, figures)
-	for f := range up {
-		up[f] = make([]int8, knobs)
+		x.effect[f] = make([]float64, knobs)
 	}
 	low := make([]float64, figures)
 	for k := range knobs {
@@ -61,35 +63,46 @@ func Find(knobs, figures int, eval Eval) (*Extremes, error) {
 			return nil, err
 		}
 		for f := range figures {
-			up[f][k] = sign(x.out[f] - low[f])
+			x.effect[f][k] = x.out[f] - low[f]
 		}
 	}
 	for f := range figures {
-		if err := x.climb(f, up[f], 1); err != nil {
-			return nil, err
-		}
-		if err := x.climb(f, up[f], -1); err != nil {
-			return nil, err
+		for _, way := range []float64{1, -1} {
+			if err := x.climb(f, way); err != nil {
+				return nil, err
+			}
 		}
 	}
 	return x, nil
 }
 
-// climb tries a figure's corner and then turns each knob over.
-func (x *Extremes) climb(f int, up []int8, way int8) error {
-	corner := make([]int8, len(up))
-	for k, s := range up {
-		corner[k] = s * way
+// climb tries a figure's corner, and then turns over the knobs whose sign is
+// in doubt there.
+func (x *Extremes) climb(f int, way float64) error {
+	effect := x.effect[f]
+	corner := make([]int8, len(effect))
+	sum := x.Typ[f]
+	for k, e := range effect {
+		corner[k] = sign(e * way)
+		sum += math.Abs(e) / 2 * way
 	}
 	if err := x.try(corner); err != nil {
 		return err
 	}
+	reached := x.Max[f]
+	if way < 0 {
+		reached = x.Min[f]
+	}
+	doubt := 2 * math.Abs(reached-sum)
+	if !(doubt > rounding*math.Abs(reached-x.Typ[f])) {
+		return nil
+	}
 	for range rounds {
-		best := x.Highest[f]
-		if way < 0 {
-			best = x.Lowest[f]
-		}
-		for k := range up {
+		best := x.corner(f, way)
+		for k, e := range effect {
+			if math.Abs(e) > doubt {
+				continue
+			}
 			next := append([]int8(nil), best...)
 			next[k] = -next[k]
 			if next[k] == 0 {
@@ -99,19 +112,26 @@ func (x *Extremes) climb(f int, up []int8, way int8) error {
 				return err
 			}
 		}
-		now := x.Highest[f]
-		if way < 0 {
-			now = x.Lowest[f]
-		}
-		if &now[0] == &best[0] {
+		if now := x.corner(f, way); &now[0] == &best[0] {
 			break
 		}
 	}
 	return nil
 }
 
-// rounds is how often a corner is improved; one round confirms.
-const rounds = 4
+func (x *Extremes) corner(f int, way float64) []int8 {
+	if way < 0 {
+		return x.Lowest[f]
+	}
+	return x.Highest[f]
+}
+
+const (
+	// rounds is how often a corner is improved; one round confirms.
+	rounds = 4
+	// rounding is the share of a spread that no reading would show.
+	rounding = 1e-4
+)
 
 // try solves a corner, once, and takes what is worse than anything before.
 func (x *Extremes) try(corner []int8) error {
