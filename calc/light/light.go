@@ -38,7 +38,10 @@ func (s Source) share(x float64) (float64, bool) {
 	}
 	n := len(points)
 	if last := points[n-1][0]; x > last {
-		return 0, x <= last*(1+1e-9)
+		if x > last*(1+sameCurrent) {
+			return 0, false
+		}
+		x = last
 	}
 	k := 0
 	for k < n-2 && x > points[k+1][0] {
@@ -51,6 +54,10 @@ func (s Source) share(x float64) (float64, bool) {
 	t2, t3 := t*t, t*t*t
 	return y0*(2*t3-3*t2+1) + d0*h*(t3-2*t2+t) + y1*(3*t2-2*t3) + d1*h*(t3-t2), true
 }
+
+// sameCurrent is the share by which a current may pass the curve's last point
+// and still be at it.
+const sameCurrent = 1e-9
 
 // tangent is the slope at a knot that keeps the curve between its neighbours:
 // the weighted harmonic mean of the slopes on either side.

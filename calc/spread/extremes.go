@@ -93,10 +93,11 @@ func (x *Extremes) climb(f int, way float64) error {
 	if way < 0 {
 		reached = x.Min[f]
 	}
-	doubt := 2 * math.Abs(reached-sum)
-	if !(doubt > rounding*math.Abs(reached-x.Typ[f])) {
+	departure := math.Abs(reached - sum)
+	if !(departure > rounding*math.Abs(reached-x.Typ[f])) {
 		return nil
 	}
+	doubt := doubtful * departure
 	for range rounds {
 		best := x.corner(f, way)
 		for k, e := range effect {
@@ -129,6 +130,10 @@ func (x *Extremes) corner(f int, way float64) []int8 {
 const (
 	// rounds is how often a corner is improved; one round confirms.
 	rounds = 4
+	// doubtful is how many times the departure a knob's single effect may be
+	// and its sign still be in doubt: a joint effect counts fourfold in it, and
+	// others may take some of it away again.
+	doubtful = 6
 	// rounding is the share of a spread that no reading would show.
 	rounding = 1e-4
 )
