@@ -2,7 +2,10 @@
 // circuits: it turns knobs between −1 and 1 and looks at numbers.
 package spread
 
-import "math"
+import (
+	"math"
+	"slices"
+)
 
 // Extremes is the worst case of several figures over several knobs.
 type Extremes struct {
@@ -14,7 +17,7 @@ type Extremes struct {
 
 	effect [][]float64 // by figure and knob: most less least, that knob alone
 	turn   []float64
-	tried  map[string]bool
+	tried  map[string][]float64
 	out    []float64
 	eval   Eval
 }
@@ -36,7 +39,7 @@ func Find(knobs, figures int, eval Eval) (*Extremes, error) {
 		Min: make([]float64, figures), Typ: make([]float64, figures), Max: make([]float64, figures),
 		Lowest: make([][]int8, figures), Highest: make([][]int8, figures),
 		turn: make([]float64, knobs), out: make([]float64, figures),
-		tried: map[string]bool{}, eval: eval, effect: make([][]float64, figures),
+		tried: map[string][]float64{}, eval: eval, effect: make([][]float64, figures),
 	}
 	typical := make([]int8, knobs)
 	if err := x.eval(x.turn, x.out); err != nil {
@@ -66,10 +69,14 @@ func Find(knobs, figures int, eval Eval) (*Extremes, error) {
 			x.effect[f][k] = x.out[f] - low[f]
 		}
 	}
-	for f := range figures {
-		for _, way := range []float64{1, -1} {
-			if err := x.climb(f, way); err != nil {
-				return nil, err
+	// What one search comes by may start another anew; a second pass finds
+	// nearly everything tried already.
+	for range 2 {
+		for f := range figures {
+			for _, way := range []float64{1, -1} {
+				if err := x.climb(f, way); err != nil {
+					return nil, err
+				}
 			}
 		}
 	}
@@ -80,28 +87,24 @@ func Find(knobs, figures int, eval Eval) (*Extremes, error) {
 // in doubt there.
 func (x *Extremes) climb(f int, way float64) error {
 	effect := x.effect[f]
-	corner := make([]int8, len(effect))
+	best := make([]int8, len(effect))
 	sum := x.Typ[f]
 	for k, e := range effect {
-		corner[k] = sign(e * way)
+		best[k] = sign(e * way)
 		sum += math.Abs(e) / 2 * way
 	}
-	if err := x.try(corner); err != nil {
+	if err := x.try(best); err != nil {
 		return err
 	}
-	reached := x.Max[f]
-	if way < 0 {
-		reached = x.Min[f]
-	}
+	reached := x.out[f]
 	departure := math.Abs(reached - sum)
-	if !(departure > rounding*math.Abs(reached-x.Typ[f])) {
+	if departure <= rounding*math.Abs(sum-x.Typ[f]) {
 		return nil
 	}
-	doubt := doubtful * departure
 	for range rounds {
-		best := x.corner(f, way)
+		improved := false
 		for k, e := range effect {
-			if math.Abs(e) > doubt {
+			if math.Abs(e) > doubtful*departure {
 				continue
 			}
 			next := append([]int8(nil), best...)
@@ -112,24 +115,29 @@ func (x *Extremes) climb(f int, way float64) error {
 			if err := x.try(next); err != nil {
 				return err
 			}
+			if (x.out[f]-reached)*way > 0 {
+				best, reached, improved = next, x.out[f], true
+			}
 		}
-		if now := x.corner(f, way); &now[0] == &best[0] {
+		if improved {
+			continue
+		}
+		// Another figure's search may have come by a corner as bad or worse.
+		other, value := x.Highest[f], x.Max[f]
+		if way < 0 {
+			other, value = x.Lowest[f], x.Min[f]
+		}
+		if slices.Equal(other, best) {
 			break
 		}
+		best, reached = other, value
 	}
 	return nil
 }
 
-func (x *Extremes) corner(f int, way float64) []int8 {
-	if way < 0 {
-		return x.Lowest[f]
-	}
-	return x.Highest[f]
-}
-
 const (
 	// rounds is how often a corner is improved; one round confirms.
-	rounds = 4
+	rounds = 6
 	// doubtful is how many times the departure a knob's single effect may be
 	// and its sign still be in doubt: a joint effect counts fourfold in it, and
 	// others may take some of it away again.
@@ -138,20 +146,22 @@ const (
 	rounding = 1e-4
 )
 
-// try solves a corner, once, and takes what is worse than anything before.
+// try leaves a corner's figures in x.out, solving it if it is new, and takes
+// what is worse than anything before.
 func (x *Extremes) try(corner []int8) error {
 	key := make([]byte, len(corner))
 	for k, s := range corner {
 		key[k] = byte(s + 1)
 		x.turn[k] = float64(s)
 	}
-	if x.tried[string(key)] {
+	if known, ok := x.tried[string(key)]; ok {
+		copy(x.out, known)
 		return nil
 	}
-	x.tried[string(key)] = true
 	if err := x.eval(x.turn, x.out); err != nil {
 		return err
 	}
+	x.tried[string(key)] = append([]float64(nil), x.out...)
 	for f, v := range x.out {
 		if v < x.Min[f] {
 			x.Min[f], x.Lowest[f] = v, corner
