@@ -28,9 +28,9 @@ const (
 	treePatience = 60
 	// airRest is the step in kelvin at which heat and a can's air agree.
 	airRest = 1e-5
-	// baseRest is the step in volts at which a tail held at the base's voltage
-	// has found it.
-	baseRest = 1e-4
+	// baseRest is how near in volts to the base a tail counts as held at it:
+	// there the current hardly moves with it.
+	baseRest = 5e-3
 	// needRest is the step in volts at which the least voltage is found.
 	needRest = 1e-4
 	// usualSaturation is the collector-emitter voltage in volts from which the
@@ -233,23 +233,28 @@ func (l *line) headroom(volts, ohms float64) (leftOver, error) {
 }
 
 // findNeed lowers the tail, with the LEDs detached, until the current has lost
-// 1 %: Newton's method kept inside a bracket whose upper end holds it.
+// 1 %. Saturation takes current away exponentially, so Newton's method goes by
+// the logarithm of the loss, kept inside a bracket whose upper end holds it.
 func (l *line) findNeed(r *leftOver, high float64) error {
 	net := l.Net
-	low, want := 0.0, held*r.full
+	low, lost := 0.0, (1-held)*r.full
+	base := high
 	try := math.Min(high, net.Voltage(l.Sense)+usualSaturation)
+	if l.below > 0 && base-l.below > 0 {
+		try = base - l.below
+	}
 	for range treePatience {
 		net.Hold(l.Tail, try)
 		if err := net.Solve(); err != nil {
 			return &Unsolved{l.spec.Label, err}
 		}
-		miss := net.HeldCurrent(l.Tail) - want
-		if miss < 0 {
+		loss := r.full - net.HeldCurrent(l.Tail)
+		if loss > lost {
 			low = try
 		} else {
 			high = try
 		}
-		next := try - miss/net.HeldSlope(l.Tail)
+		next := try + math.Log(loss/lost)*loss/net.HeldSlope(l.Tail)
 		if !(next > low && next < high) {
 			next = (low + high) / 2
 		}
@@ -258,6 +263,7 @@ func (l *line) findNeed(r *leftOver, high float64) error {
 		}
 		try = next
 	}
+	l.below = base - try
 	r.need, r.sense = net.Voltage(l.Tail), net.Voltage(l.Sense)
 	return nil
 }

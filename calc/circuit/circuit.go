@@ -42,6 +42,7 @@ type Circuit struct {
 	perm    []int
 	gmin    float64
 	search  Unsolved
+	last    []float64 // state of the solution before; see Advance
 	ready   bool
 }
 

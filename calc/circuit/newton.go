@@ -31,10 +31,10 @@ func (u *Unsolved) copy() *Unsolved {
 const (
 	// restVolts is the last step of a Newton search that is taken as its end.
 	// Convergence is quadratic: the error that remains is of the order of its
-	// square over the thermal voltage, some 1e-10 V.
-	restVolts = 3e-6
+	// square over the thermal voltage, some 1e-9 V.
+	restVolts = 1e-5
 	// restKelvin is the same for temperatures.
-	restKelvin = 5e-3
+	restKelvin = 1e-2
 	// patience is the number of Newton steps before another way is tried.
 	patience = 60
 	// leak is the conductance in siemens from every node to the return that

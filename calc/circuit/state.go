@@ -27,3 +27,43 @@ func (c *Circuit) Load(s *State) {
 	copy(c.bjts, s.bjts)
 	c.ready = false
 }
+
+// Advance moves the state on by as much as the last solution differed from the
+// one before, where the next of an evenly spaced series of solutions lies. The
+// first call only remembers.
+func (c *Circuit) Advance() {
+	need := len(c.v) + len(c.stacks) + 3*len(c.bjts)
+	first := len(c.last) != need
+	if first {
+		c.last = make([]float64, need)
+	}
+	at := c.last
+	move := func(now *float64) {
+		was := at[0]
+		at[0] = *now
+		if !first {
+			*now += *now - was
+		}
+		at = at[1:]
+	}
+	for n := range c.v {
+		if c.held[n] {
+			at = at[1:]
+			continue
+		}
+		move(&c.v[n])
+	}
+	for i := range c.stacks {
+		move(&c.stacks[i].x)
+	}
+	for i := range c.bjts {
+		q := &c.bjts[i]
+		move(&q.vbe)
+		move(&q.vbc)
+		if q.rth == 0 {
+			at = at[1:]
+			continue
+		}
+		move(&q.t)
+	}
+}
