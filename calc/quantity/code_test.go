@@ -96,7 +96,7 @@ func TestFormatCode(t *testing.T) {
 		{name: "a link", ohms: 0, want: "0R0"},
 		{name: "more digits than a code has", ohms: 1034.567, want: "1.034567\u00a0kΩ"},
 		{name: "negative", ohms: -5, want: "\u22125\u00a0Ω"},
-		{name: "not a number", ohms: math.NaN(), want: "?\u00a0mΩ"},
+		{name: "not a number", ohms: math.NaN(), want: "?\u00a0Ω"},
 	}
 	for _, c := range cases {
 		t.Run(c.name, func(t *testing.T) {

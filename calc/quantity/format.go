@@ -28,7 +28,7 @@ func Format(v float64, unit string, digits int) string {
 		u.name = unit
 	}
 	if math.IsNaN(v) || math.IsInf(v, 0) {
-		return u.label("?", u.shown[0])
+		return u.label("?", u.base())
 	}
 	digits = min(max(digits, 1), 15)
 	d, exp := significant(strconv.FormatFloat(math.Abs(v), 'e', digits-1, 64))
@@ -48,7 +48,7 @@ func Text(v float64, unit string) string {
 		u.name = unit
 	}
 	if math.IsNaN(v) || math.IsInf(v, 0) {
-		return u.label("?", u.shown[0])
+		return u.label("?", u.base())
 	}
 	d, exp := shortest(v)
 	power := u.power(exp)

@@ -43,7 +43,7 @@ func TestFormat(t *testing.T) {
 		{name: "a tiny plain number", v: 4e-19, unit: "", digits: 2, want: "4.0e-19"},
 		{name: "a huge number", v: 1e300, unit: "V", digits: 2, want: "1.0e+300\u00a0V"},
 		{name: "no digits asked is one", v: 4700, unit: "Ω", digits: 0, want: "5\u00a0kΩ"},
-		{name: "not a number", v: math.NaN(), unit: "A", digits: 3, want: "?\u00a0nA"},
+		{name: "not a number", v: math.NaN(), unit: "A", digits: 3, want: "?\u00a0A"},
 		{name: "a unit of the caller's own", v: 4.2, unit: "Wh", digits: 2, want: "4.2\u00a0Wh"},
 	}
 	for _, c := range cases {

@@ -232,7 +232,7 @@ func FormatSpread(s Spread, unit string) string {
 	}
 	for _, v := range []float64{s.Min, s.Typ, s.Max} {
 		if math.IsNaN(v) || math.IsInf(v, 0) {
-			return u.label("?", u.shown[0])
+			return u.label("?", u.base())
 		}
 	}
 	if s.Bare {
