@@ -125,7 +125,8 @@ type Divider struct {
 }
 
 // Reference holds a base: a Zener, a shunt reference or diodes, as a voltage
-// at 25 °C behind a slope resistance. It takes current and gives none.
+// at 25 °C behind a slope resistance. A check says so where the base takes more
+// than the bias brings, which no reference can give.
 type Reference struct {
 	Volts  Spread  `json:"volts" read:"required"` // [V]
 	Tempco float64 `json:"tempco,omitempty"`      // [V/K]

@@ -95,6 +95,18 @@ func (p *plant) typical(r *Report, inside float64) {
 		}
 		r.Strings = append(r.Strings, s)
 	}
+	for _, rail := range p.rails {
+		rail.typ = make([]float64, rail.figures())
+		rail.collect(rail.typ)
+		rr := RailReport{ID: rail.spec.ID, Voltage: exactly(rail.volts), Devices: []DeviceReport{}}
+		for k, d := range rail.Devices {
+			rr.Devices = append(rr.Devices, DeviceReport{
+				Role: d.Role, Part: d.Part, Power: exactly(rail.typ[railDevices+2*k]), Junction: exactly(rail.typ[railDevices+2*k+1]),
+				PowerLimit: p.railPowerLimit(rail, k), JunctionLimit: p.junctionLimit(d.Part),
+			})
+		}
+		r.Rails = append(r.Rails, rr)
+	}
 	power := p.result.Total * p.build.Supply.Voltage.Typ
 	r.Supply.Current, r.Supply.Power = exactly(p.result.Total), exactly(power)
 	r.Supply.Inside = exactly(inside)
@@ -176,6 +188,16 @@ func (p *plant) fill(r *Report, air Spread) {
 		least += l.quantity * l.ranged(figDraw).Min
 		most += l.quantity * l.ranged(figDraw).Max
 	}
+	for i, rail := range p.rails {
+		rr := &r.Rails[i]
+		rr.Voltage = rail.ranged(railVolts)
+		for k := range rr.Devices {
+			rr.Devices[k].Power = rail.ranged(railDevices + 2*k)
+			rr.Devices[k].Junction = rail.ranged(railDevices + 2*k + 1)
+		}
+		least += rail.ranged(railDraw).Min
+		most += rail.ranged(railDraw).Max
+	}
 	v := p.build.Supply.Voltage
 	supply.Current.Min, supply.Current.Max = math.Min(least, supply.Current.Typ), math.Max(most, supply.Current.Typ)
 	supply.Power.Min, supply.Power.Max = supply.Current.Min*v.Min, supply.Current.Max*v.Max
@@ -198,6 +220,41 @@ func (p *plant) powerLimit(l *line, k int) *float64 {
 	}
 	if part, ok := p.build.Parts[d.Part]; ok && part.Transistor != nil {
 		return part.Transistor.MaxPower
+	}
+	return nil
+}
+
+func (p *plant) railPowerLimit(r *railLine, k int) *float64 {
+	d := r.Devices[k]
+	if d.IsResistor() {
+		if fitted := r.spec.resistor(d.Role); fitted != nil {
+			return fitted.Watts
+		}
+		return nil
+	}
+	if part, ok := p.build.Parts[d.Part]; ok && part.Transistor != nil {
+		return part.Transistor.MaxPower
+	}
+	return nil
+}
+
+// resistor returns the rail's resistor in a role, nil where it has none.
+func (r *Rail) resistor(role string) *Resistor {
+	switch role {
+	case "pullup_resistor":
+		return r.Pullup
+	case "bias_resistor":
+		return r.Bias
+	case "pulldown_resistor":
+		return r.Pulldown
+	case "upper_resistor", "lower_resistor":
+		if r.Control == nil || r.Control.Divider == nil {
+			return nil
+		}
+		if role == "upper_resistor" {
+			return &r.Control.Divider.Upper
+		}
+		return &r.Control.Divider.Lower
 	}
 	return nil
 }
@@ -237,6 +294,8 @@ func (s *String) resistor(role string) *Resistor {
 		}
 	case d.ReferenceSink != nil:
 		byRole = map[string]*Resistor{"sense_resistor": &d.ReferenceSink.Sense, "bias_resistor": &d.ReferenceSink.Bias}
+	case d.RailSink != nil:
+		byRole = map[string]*Resistor{"sense_resistor": &d.RailSink.Sense}
 	case d.TwoTransistor != nil:
 		byRole = map[string]*Resistor{"sense_resistor": &d.TwoTransistor.Sense, "bias_resistor": &d.TwoTransistor.Bias}
 	}

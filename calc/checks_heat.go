@@ -14,9 +14,12 @@ func (b *book) checkHeat(l *line, s *StringReport) {
 		case d.IsLED():
 			b.checkLED(l, s, k)
 		case d.IsTransistor():
-			b.checkTransistor(l, s, k)
+			b.checkTransistor(l.where(), l.pointer("/driver"), &s.Devices[k])
+			if k == l.Holder {
+				b.checkHolder(l, s)
+			}
 		case d.IsResistor():
-			b.checkResistor(l, s, k)
+			b.checkResistor(l.where(), l.pointer("/driver"+resistorPath(d.Role)), &s.Devices[k], l.spec.resistor(d.Role))
 		}
 	}
 }
@@ -34,15 +37,15 @@ func (b *book) checkLED(l *line, s *StringReport, k int) {
 		f.Working = fmt.Sprintf("worst-case string current %s against the rated %s", amps(most), amps(*part.MaxCurrent))
 		b.add(f)
 	}
-	b.checkJunction(l, s, k, "led-junction", part.MaxJunction, part.RthJunctionAmbient)
+	d := &s.Devices[k]
+	b.checkJunction(l.where(), l.pointer("/driver"), deviceName(d), d, "led-junction", part.MaxJunction, part.RthJunctionAmbient)
 }
 
-func (b *book) checkJunction(l *line, s *StringReport, k int, code string, limit, rth *float64) {
-	d := &s.Devices[k]
+// checkJunction verifies a device's junction; name is how the message calls it.
+func (b *book) checkJunction(where, at, name string, d *DeviceReport, code string, limit, rth *float64) {
 	hottest := d.Junction.Max
-	f := Finding{Code: code, Where: l.where(), At: l.pointer("/driver"), Value: &hottest, Limit: limit, Unit: "°C",
+	f := Finding{Code: code, Where: where, At: at, Value: &hottest, Limit: limit, Unit: "°C",
 		Source: "Tj = Tair + Rth · P; franco, ex. 11.14; limit: " + sourceRating}
-	name := l.name(k)
 	switch {
 	case rth == nil:
 		f.Value = nil
@@ -67,22 +70,25 @@ func (b *book) checkJunction(l *line, s *StringReport, k int, code string, limit
 	b.add(f)
 }
 
-// name names a device in words with its part.
-func (l *line) name(k int) string {
-	d := l.Devices[k]
-	if d.IsLED() || d.Part == "" {
-		return strings.ReplaceAll(strings.TrimPrefix(d.Role, "led_"), "_", " ")
+// deviceName names a device in words with its part.
+func deviceName(d *DeviceReport) string {
+	if led, ok := strings.CutPrefix(d.Role, "led_"); ok {
+		return led
 	}
-	return strings.ReplaceAll(d.Role, "_", " ") + " " + d.Part
+	role := strings.ReplaceAll(d.Role, "_", " ")
+	if d.Part == "" {
+		return role
+	}
+	return role + " " + d.Part
 }
 
-func (b *book) checkTransistor(l *line, s *StringReport, k int) {
-	d := &s.Devices[k]
+// checkTransistor verifies the heat of a transistor of a string or a rail.
+func (b *book) checkTransistor(where, at string, d *DeviceReport) {
 	part := b.p.build.Parts[d.Part].Transistor
-	name := l.name(k)
+	name := deviceName(d)
 	most := d.Power.Max
 	air := b.r.Supply.Inside.Max
-	f := Finding{Code: "transistor-power", Where: l.where(), At: l.pointer("/driver"), Value: &most, Unit: "W",
+	f := Finding{Code: "transistor-power", Where: where, At: at, Value: &most, Unit: "W",
 		Source: "linear derating; malvino, ex. 12-14; limit: " + sourceRating}
 	switch {
 	case part.MaxPower != nil && part.MaxJunction != nil:
@@ -97,10 +103,14 @@ func (b *book) checkTransistor(l *line, s *StringReport, k int) {
 	default:
 		b.missing(f, "greatest junction temperature (max_junction)", d.Part)
 	}
-	b.checkJunction(l, s, k, "transistor-junction", part.MaxJunction, part.RthJunctionAmbient)
-	if k != l.Holder {
-		return
-	}
+	b.checkJunction(where, at, name, d, "transistor-junction", part.MaxJunction, part.RthJunctionAmbient)
+}
+
+// checkHolder verifies the ratings of the transistor that holds the current.
+func (b *book) checkHolder(l *line, s *StringReport) {
+	d := &s.Devices[l.Holder]
+	part := b.p.build.Parts[d.Part].Transistor
+	name := deviceName(d)
 	b.checkRating(l, "transistor-voltage", part.MaxCollectorEmitterVoltage, b.p.build.Supply.Voltage.Max, "V", volts,
 		name+" with the LEDs dark", d.Part, "collector-emitter rating (max_collector_emitter_voltage)",
 		"with the LEDs dark or shorted nothing but the transistor stands against the supply at its highest")
@@ -120,15 +130,14 @@ func (b *book) checkRating(l *line, code string, limit *float64, value float64, 
 	b.add(f)
 }
 
-func (b *book) checkResistor(l *line, s *StringReport, k int) {
-	d := &s.Devices[k]
-	name := strings.ReplaceAll(d.Role, "_", " ")
-	r := l.spec.resistor(d.Role)
+// checkResistor verifies a fitted resistor's dissipation; at points to it.
+func (b *book) checkResistor(where, at string, d *DeviceReport, r *Resistor) {
 	if r == nil {
 		return // a pot's track is judged with the pot
 	}
+	name := strings.ReplaceAll(d.Role, "_", " ")
 	most := d.Power.Max
-	f := Finding{Code: "resistor-power", Where: l.where(), At: l.pointer("/driver" + resistorPath(d.Role)), Value: &most, Limit: r.Watts, Unit: "W",
+	f := Finding{Code: "resistor-power", Where: where, At: at, Value: &most, Limit: r.Watts, Unit: "W",
 		Source: "P = V²/R; 60 % of the rating, " + sourcePractice}
 	if r.Watts == nil {
 		b.missing(f, "rating (watts)", "the "+name)
@@ -140,7 +149,7 @@ func (b *book) checkResistor(l *line, s *StringReport, k int) {
 	b.add(f)
 }
 
-// resistorPath is where a resistor stands below its driver.
+// resistorPath is where a resistor stands below its driver or rail.
 func resistorPath(role string) string {
 	switch role {
 	case "resistor":

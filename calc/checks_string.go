@@ -121,6 +121,8 @@ func (l *line) intended() float64 {
 		return d.FollowerSink.Control.Volts.Typ / d.FollowerSink.Sense.Ohms
 	case d.ReferenceSink != nil:
 		return math.Max(0, d.ReferenceSink.Reference.Volts.Typ-vbe) / d.ReferenceSink.Sense.Ohms
+	case d.RailSink != nil:
+		return math.Max(0, l.rail.volts-vbe) / d.RailSink.Sense.Ohms
 	case d.TwoTransistor != nil:
 		return vbe / d.TwoTransistor.Sense.Ohms
 	}
@@ -131,6 +133,9 @@ func (l *line) intended() float64 {
 // that a reference keeps enough to hold.
 func (b *book) checkDrive(l *line, s *StringReport) {
 	k := l.driveResistor()
+	if k < 0 {
+		return // its base hangs on a rail, which is judged there
+	}
 	holder := l.Devices[l.Holder]
 	role := l.Devices[k].Role
 	path := l.pointer("/driver/" + strings.TrimSuffix(role, "_resistor") + "/ohms")
@@ -171,7 +176,7 @@ func (b *book) checkDrive(l *line, s *StringReport) {
 	}
 	switch {
 	case spare <= 0:
-		g.Severity, g.Message = Fail, "the base takes all of the bias: the reference does not hold"
+		g.Severity, g.Message = Fail, fmt.Sprintf("the base takes %s more than the bias brings: no reference holds that, and the figures of this string are too good", amps(-spare))
 	case spare < least:
 		g.Severity, g.Message = Tight, fmt.Sprintf("only %s is left for the reference; low-voltage types go soft below a milliampere", amps(spare))
 	default:

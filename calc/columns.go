@@ -6,14 +6,18 @@ package calc
 func (p *plant) columns(r *Report) error {
 	for i, l := range p.strings {
 		n := len(l.Knobs)
-		usual := make([]float64, n+2)
-		cold, hot := make([]float64, n+2), make([]float64, n+2)
+		usual := make([]float64, l.turns())
+		cold, hot := make([]float64, l.turns()), make([]float64, l.turns())
 		for k := range n {
 			cold[k] = float64(l.worst.Lowest[figHeadroom][k])
 			hot[k] = float64(l.worst.Highest[figDevices+2*l.Holder][k])
 		}
 		cold[n], cold[n+1] = -1, -1
 		hot[n], hot[n+1] = 1, 1
+		if l.rail != nil {
+			cold[n+2] = float64(l.worst.Lowest[figHeadroom][n+2])
+			hot[n+2] = float64(l.worst.Highest[figDevices+2*l.Holder][n+2])
+		}
 		c := &r.Strings[i].Columns
 		v := p.build.Supply.Voltage
 		for _, at := range []struct {
@@ -36,10 +40,12 @@ func (p *plant) columns(r *Report) error {
 }
 
 func (l *line) column(turn []float64, supply float64) (Column, error) {
-	l.turnTo(turn)
-	n := len(l.Knobs)
-	at := l.reach.at(turn[n], turn[n+1])
-	if err := l.solveAt(at); err != nil {
+	var w worst
+	at, _, err := l.corner(&w, l.reach, turn)
+	if err == nil {
+		err = w.runaway
+	}
+	if err != nil {
 		return Column{}, err
 	}
 	c := Column{Supply: supply, Current: l.Net.LEDCurrent(l.Stack), Heat: l.Power(l.Devices[l.Holder])}

@@ -14,6 +14,7 @@ import (
 type plant struct {
 	build   *Build
 	strings []*line
+	rails   []*railLine
 	tree    wiring.Tree
 	runAt   map[string]int // index in the tree by a run's id
 	runOf   []int          // index in build.Runs by that in the tree
@@ -34,7 +35,8 @@ type line struct {
 	index    int
 	spec     *String
 	quantity float64
-	run      int // index in the tree, −1 at the supply
+	run      int       // index in the tree, −1 at the supply
+	rail     *railLine // on which its base hangs; nil for the other kinds
 	path     float64
 	lights   []light.Source // by LED group; a zero flux is not known
 	assumed  []string       // parts whose figures were assumed, in words
@@ -57,6 +59,12 @@ func compile(b *Build) (*plant, error) {
 	if err := p.wire(); err != nil {
 		return nil, err
 	}
+	railOf := map[string]*railLine{}
+	for i := range b.Rails {
+		r := p.wireRail(i)
+		p.rails = append(p.rails, r)
+		railOf[r.spec.ID] = r
+	}
 	for i := range b.Strings {
 		s := &b.Strings[i]
 		l := &line{index: i, spec: s, quantity: float64(s.Quantity), run: -1}
@@ -64,8 +72,15 @@ func compile(b *Build) (*plant, error) {
 			l.run = p.runAt[s.FedBy]
 		}
 		l.assemble(b)
+		if d := s.Driver.RailSink; d != nil {
+			l.rail = railOf[d.Rail]
+			l.rail.lines = append(l.rail.lines, l)
+		}
 		p.strings = append(p.strings, l)
 		p.loads = append(p.loads, wiring.Load{At: l.run})
+	}
+	for _, r := range p.rails {
+		p.loads = append(p.loads, wiring.Load{At: r.run})
 	}
 	return p, nil
 }
@@ -73,12 +88,9 @@ func compile(b *Build) (*plant, error) {
 // refuse names what cannot be solved yet.
 func refuse(b *Build) error {
 	var faults Invalid
-	if len(b.Rails) > 0 {
-		faults = append(faults, Fault{"/rails", "base rails cannot be solved by this version"})
-	}
 	for i := range b.Strings {
 		switch kind := b.Strings[i].Driver.Kind; kind {
-		case KindResistor, KindFollowerSink, KindReferenceSink, KindTwoTransistor:
+		case KindResistor, KindFollowerSink, KindReferenceSink, KindTwoTransistor, KindRailSink:
 		default:
 			faults = append(faults, Fault{fmt.Sprintf("/strings/%d/driver/kind", i),
 				fmt.Sprintf("a driver of kind %q cannot be solved by this version", kind)})
@@ -143,6 +155,9 @@ func (p *plant) heatWires(celsius float64) {
 	for _, l := range p.strings {
 		l.path = p.tree.PathOhms(l.run) * l.quantity
 	}
+	for _, r := range p.rails {
+		r.path = p.tree.PathOhms(r.run)
+	}
 }
 
 // assemble wires the string's circuit with the parts of the build.
@@ -161,9 +176,15 @@ func (l *line) assemble(b *Build) {
 	case d.ReferenceSink != nil:
 		f := d.ReferenceSink
 		l.Assembly = driver.ReferenceSink(leds, driver.Fixed{
-			Reference: driver.Reference{Volts: limits(f.Reference.Volts), Tempco: f.Reference.Tempco, Ohms: f.Reference.Ohms},
-			Bias:      resistance(f.Bias), NPN: l.transistor(b, f.NPN), Sense: resistance(f.Sense),
+			Reference: reference(f.Reference), Bias: resistance(f.Bias), NPN: l.transistor(b, f.NPN), Sense: resistance(f.Sense),
 		})
+	case d.RailSink != nil:
+		f := d.RailSink
+		on := driver.OnRail{NPN: l.transistor(b, f.NPN), Sense: resistance(f.Sense)}
+		if f.BaseResistor != nil {
+			on.BaseResistor = *f.BaseResistor
+		}
+		l.Assembly = driver.RailSink(leds, on)
 	case d.TwoTransistor != nil:
 		f := d.TwoTransistor
 		l.Assembly = driver.TwoTransistor(leds, driver.Limiter{

@@ -28,6 +28,7 @@ type corner struct {
 	ohms    float64 // [Ω]
 	ambient float64 // [°C] outside
 	inside  float64 // [°C] round the parts
+	rail    float64 // [V] of the base rail, where there is one
 }
 
 // collect reads the string's figures at its present operating point into out.
@@ -98,6 +99,7 @@ type reach struct {
 	volts           Spread // [V] behind the string's own share of the cable
 	ambient, inside Spread // [°C]
 	ohms            [3]float64
+	rail            *railLine // nil without
 }
 
 // between returns a spread's value at a turn from −1 to 1.
@@ -123,10 +125,23 @@ func (r *reach) at(supply, ambient float64) corner {
 // solveAt solves the string in a corner with its knobs as they stand.
 func (l *line) solveAt(c corner) error {
 	l.Net.SetAir(c.inside)
+	if l.rail != nil {
+		l.Net.Hold(l.Rail, c.rail)
+	}
 	return l.behindOf(c.volts, c.ohms, 0)
 }
 
-// turnTo turns the string's knobs; the last two turns are supply and ambient.
+// turns is how many values the world may take a string through: its own knobs,
+// the supply, the ambient, and its rail where it hangs on one.
+func (l *line) turns() int {
+	if l.rail != nil {
+		return len(l.Knobs) + 3
+	}
+	return len(l.Knobs) + 2
+}
+
+// turnTo turns the string's knobs; behind them the turns are those of supply,
+// ambient and rail.
 func (l *line) turnTo(turn []float64) {
 	for k, knob := range l.Knobs {
 		if l.turned[k] != turn[k] {
@@ -142,7 +157,7 @@ func (l *line) turnTo(turn []float64) {
 func (l *line) extremes(r reach) (worst, error) {
 	w := worst{fluxKnown: true}
 	var err error
-	w.Extremes, err = spread.Find(len(l.Knobs)+2, l.figures(), func(turn, out []float64) error {
+	w.Extremes, err = spread.Find(l.turns(), l.figures(), func(turn, out []float64) error {
 		_, ok, err := l.corner(&w, r, turn)
 		if !ok {
 			fillNaN(out)
@@ -156,7 +171,7 @@ func (l *line) extremes(r reach) (worst, error) {
 		return w, err
 	}
 	// What is left over costs several solutions; it gets a search of its own.
-	left, err := spread.Find(len(l.Knobs)+2, 1, func(turn, out []float64) error {
+	left, err := spread.Find(l.turns(), 1, func(turn, out []float64) error {
 		c, ok, err := l.corner(&w, r, turn)
 		fillNaN(out)
 		if !ok {
@@ -178,14 +193,18 @@ func (l *line) extremes(r reach) (worst, error) {
 	return w, nil
 }
 
-// drawExtremes is extremes for the current from the feed alone.
+// drawExtremes is extremes for what the string takes from the feed, and from
+// its rail, alone.
 func (l *line) drawExtremes(r reach) (*spread.Extremes, error) {
 	var w worst
-	x, err := spread.Find(len(l.Knobs)+2, 1, func(turn, out []float64) error {
+	x, err := spread.Find(l.turns(), 2, func(turn, out []float64) error {
 		_, ok, err := l.corner(&w, r, turn)
 		fillNaN(out)
 		if ok {
 			out[0] = l.Draw()
+			if l.rail != nil {
+				out[1] = l.Net.HeldCurrent(l.Rail)
+			}
 		}
 		return err
 	})
@@ -199,6 +218,9 @@ func (l *line) corner(w *worst, r reach, turn []float64) (c corner, ok bool, err
 	l.turnTo(turn)
 	n := len(l.Knobs)
 	c = r.at(turn[n], turn[n+1])
+	if l.rail != nil {
+		c.rail = between(l.rail.atAmbient(turn[n+1]), turn[n+2])
+	}
 	err = l.solveAt(c)
 	if isRunaway(err) {
 		w.runaway = err
@@ -230,11 +252,12 @@ func (l *line) toTypical() {
 func (p *plant) reaches(air Spread) ([]reach, error) {
 	b := p.build
 	out := make([]reach, len(p.strings))
+	whole := reach{volts: b.Supply.Voltage, ambient: b.Ambient, inside: air}
 	for i := range out {
-		out[i] = reach{volts: b.Supply.Voltage, ambient: b.Ambient, inside: air}
+		out[i] = whole
 	}
-	if !p.coupled() {
-		return out, nil
+	if err := p.railReaches(out, whole); err != nil || !p.coupled() {
+		return out, err
 	}
 	for side, ambient := range []float64{b.Ambient.Min, b.Ambient.Typ, b.Ambient.Max} {
 		p.heatWires(ambient)
@@ -243,8 +266,18 @@ func (p *plant) reaches(air Spread) ([]reach, error) {
 		}
 	}
 	p.heatWires(b.Ambient.Typ)
+	// The searches above left their own solutions behind.
+	if err := p.settle(b.Supply.Voltage.Typ, air.Typ); err != nil {
+		return nil, err
+	}
 	for i, l := range p.strings {
 		out[i].volts.Typ = l.Net.Voltage(l.Feed) + l.path*l.Draw()
+	}
+	railReach := make([]reach, len(p.rails))
+	for k, r := range p.rails {
+		railReach[k] = whole
+		railReach[k].ohms = [3]float64{r.path, r.path, r.path}
+		railReach[k].volts.Typ = r.Net.Voltage(r.Feed) + r.path*r.Draw()
 	}
 	draws := make([]*spread.Extremes, len(p.strings))
 	for i, l := range p.strings {
@@ -258,22 +291,30 @@ func (p *plant) reaches(air Spread) ([]reach, error) {
 	}
 	for _, end := range []struct {
 		volts, ambient, air float64
-		pick                func(x *spread.Extremes) []int8
+		pick                func(x *spread.Extremes, f int) []int8
 		set                 func(r *reach, v float64)
 	}{
-		{b.Supply.Voltage.Min, b.Ambient.Max, air.Max, func(x *spread.Extremes) []int8 { return x.Highest[0] }, func(r *reach, v float64) { r.volts.Min = math.Min(v, r.volts.Typ) }},
-		{b.Supply.Voltage.Max, b.Ambient.Min, air.Min, func(x *spread.Extremes) []int8 { return x.Lowest[0] }, func(r *reach, v float64) { r.volts.Max = math.Max(v, r.volts.Typ) }},
+		{b.Supply.Voltage.Min, b.Ambient.Max, air.Max, func(x *spread.Extremes, f int) []int8 { return x.Highest[f] }, func(r *reach, v float64) { r.volts.Min = math.Min(v, r.volts.Typ) }},
+		{b.Supply.Voltage.Max, b.Ambient.Min, air.Min, func(x *spread.Extremes, f int) []int8 { return x.Lowest[f] }, func(r *reach, v float64) { r.volts.Max = math.Max(v, r.volts.Typ) }},
 	} {
 		p.heatWires(end.ambient)
 		for i, l := range p.strings {
 			turn := make([]float64, len(l.Knobs))
 			for k := range turn {
-				turn[k] = float64(end.pick(draws[i])[k])
+				turn[k] = float64(end.pick(draws[i], 0)[k])
 			}
 			l.turnTo(turn)
 		}
+		for _, r := range p.rails {
+			for k, knob := range r.Knobs {
+				knob.Turn(float64(end.pick(r.worst, railVolts)[k]))
+			}
+		}
 		if err := p.settle(end.volts, end.air); err != nil {
 			return nil, err
+		}
+		for k, r := range p.rails {
+			end.set(&railReach[k], r.Net.Voltage(r.Feed)+r.path*r.Draw())
 		}
 		for i, l := range p.strings {
 			end.set(&out[i], l.Net.Voltage(l.Feed)+l.path*l.Draw())
@@ -283,7 +324,40 @@ func (p *plant) reaches(air Spread) ([]reach, error) {
 	for _, l := range p.strings {
 		l.toTypical()
 	}
+	for k, r := range p.rails {
+		for _, knob := range r.Knobs {
+			knob.Turn(0)
+		}
+		if err := r.extremes(railReach[k]); err != nil {
+			return nil, err
+		}
+	}
 	return out, nil
+}
+
+// railReaches finds how far each rail goes, from the base currents that its
+// strings take at most and at least.
+func (p *plant) railReaches(strings []reach, whole reach) error {
+	for _, r := range p.rails {
+		typ := Exactly(r.volts)
+		r.reach = [3]Spread{typ, typ, typ}
+		r.loads = Spread{}
+		for _, l := range r.lines {
+			x, err := l.drawExtremes(strings[l.index])
+			if err != nil {
+				return err
+			}
+			r.loads.Min += l.quantity * x.Min[1]
+			r.loads.Typ += l.quantity * x.Typ[1]
+			r.loads.Max += l.quantity * x.Max[1]
+		}
+		own := whole
+		own.ohms = [3]float64{r.path, r.path, r.path}
+		if err := r.extremes(own); err != nil {
+			return err
+		}
+	}
+	return nil
 }
 
 // insideSpread returns the air round the parts for a heat in watts that goes

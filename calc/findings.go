@@ -34,6 +34,9 @@ func (p *plant) findings(r *Report) {
 	for _, l := range p.strings {
 		b.checkString(l)
 	}
+	for _, rail := range p.rails {
+		b.checkRail(rail)
+	}
 	b.checkSupply()
 	sort.SliceStable(r.Findings, func(i, k int) bool {
 		return rank(r.Findings[i].Severity) < rank(r.Findings[k].Severity)

@@ -81,55 +81,93 @@ func (p *plant) heatInside() float64 {
 	for _, l := range p.strings {
 		total += l.quantity * l.Draw() * l.Net.Voltage(l.Feed)
 	}
+	for _, r := range p.rails {
+		total += r.Draw() * r.Net.Voltage(r.Feed)
+	}
 	return total
 }
 
 // settle solves strings and cable together in air of a given temperature.
 func (p *plant) settle(volts, air float64) error {
+	for _, r := range p.rails {
+		r.Net.SetAir(air)
+		r.Net.Draw(r.Out, 0)
+		if err := r.feedAt(volts); err != nil {
+			return err
+		}
+		for _, l := range r.lines {
+			l.Net.Hold(l.Rail, r.volts)
+		}
+	}
 	for _, l := range p.strings {
 		l.Net.SetAir(air)
 		if err := l.at(l.feedGuess(volts)); err != nil {
 			return err
 		}
 	}
-	if !p.coupled() {
-		for _, l := range p.strings {
-			if l.Net.Voltage(l.Feed) != volts {
-				if err := l.at(volts); err != nil {
-					return err
-				}
-			}
-		}
-		p.result.Supply = volts
-		p.result.Total = 0
-		for _, l := range p.strings {
-			p.result.Total += l.quantity * l.Draw()
-		}
-		return nil
-	}
 	for range treePatience {
-		for i, l := range p.strings {
-			p.loads[i].Volts = l.Net.Voltage(l.Feed)
-			p.loads[i].Current = l.quantity * l.Draw()
-			p.loads[i].Slope = math.Max(0, l.quantity*l.Net.HeldSlope(l.Feed))
+		if err := p.balance(); err != nil {
+			return err
 		}
-		p.tree.Solve(volts, p.loads, &p.result)
-		moved := 0.0
-		for _, l := range p.strings {
-			feed := p.result.Supply
-			if l.run >= 0 {
-				feed = p.result.Volts[l.run]
-			}
-			moved = math.Max(moved, math.Abs(feed-l.Net.Voltage(l.Feed)))
-			if err := l.at(feed); err != nil {
-				return err
-			}
+		moved, err := p.share(volts)
+		if err != nil {
+			return err
 		}
 		if moved < treeRest {
 			return nil
 		}
 	}
 	return &Unsolved{"(all)", errors.New("strings and cable do not settle")}
+}
+
+// balance brings every rail to where it and its strings agree.
+func (p *plant) balance() error {
+	for _, r := range p.rails {
+		if err := r.balance(); err != nil {
+			return err
+		}
+	}
+	return nil
+}
+
+// share solves the cable with what strings and rails draw and moves their
+// feeds to what it leaves them; it returns how far the furthest moved in volts.
+func (p *plant) share(volts float64) (moved float64, err error) {
+	for i, l := range p.strings {
+		p.loads[i].Volts = l.Net.Voltage(l.Feed)
+		p.loads[i].Current = l.quantity * l.Draw()
+		p.loads[i].Slope = math.Max(0, l.quantity*l.Net.HeldSlope(l.Feed))
+	}
+	for k, r := range p.rails {
+		i := len(p.strings) + k
+		p.loads[i].Volts = r.Net.Voltage(r.Feed)
+		p.loads[i].Current = r.Draw()
+		p.loads[i].Slope = math.Max(0, r.Net.HeldSlope(r.Feed))
+	}
+	p.tree.Solve(volts, p.loads, &p.result)
+	for _, l := range p.strings {
+		feed := p.feedOf(l.run)
+		moved = math.Max(moved, math.Abs(feed-l.Net.Voltage(l.Feed)))
+		if err := l.at(feed); err != nil {
+			return moved, err
+		}
+	}
+	for _, r := range p.rails {
+		feed := p.feedOf(r.run)
+		moved = math.Max(moved, math.Abs(feed-r.Net.Voltage(r.Feed)))
+		if err := r.feedAt(feed); err != nil {
+			return moved, err
+		}
+	}
+	return moved, nil
+}
+
+// feedOf is the voltage at a run's far end after the tree was solved.
+func (p *plant) feedOf(run int) float64 {
+	if run < 0 {
+		return p.result.Supply
+	}
+	return p.result.Volts[run]
 }
 
 // feedGuess is where the search for a string's feed starts: where it was, if
@@ -148,6 +186,10 @@ func (l *line) at(feed float64) error {
 		l.started = true
 	}
 	l.FeedAt(feed)
+	return l.solve()
+}
+
+func (l *line) solve() error {
 	if err := l.Net.Solve(); err != nil {
 		l.started = false
 		return &Unsolved{l.spec.Label, err}
@@ -166,11 +208,7 @@ func (l *line) behindOf(volts, ohms, extra float64) error {
 		l.started = true
 	}
 	l.FeedBehind(volts, ohms, extra)
-	if err := l.Net.Solve(); err != nil {
-		l.started = false
-		return &Unsolved{l.spec.Label, err}
-	}
-	return nil
+	return l.solve()
 }
 
 // leftOver is a string's headroom with what it is made of.

@@ -118,7 +118,7 @@ func (p *plant) try(r *Report, f *Finding, a attempt) (after Finding, gives stri
 	b := p.build.clone()
 	a.apply(&b)
 	i, alone := stringOf(f.At)
-	alone = alone && a.withinString(i)
+	alone = alone && a.withinString(i) && p.strings[i].rail == nil
 	if !alone && len(b.Strings) > smallBuild {
 		return after, "", false
 	}
@@ -558,6 +558,7 @@ func (b *Build) clone() Build {
 		d.FollowerSink = copyOf(d.FollowerSink)
 		d.ReferenceSink = copyOf(d.ReferenceSink)
 		d.TwoTransistor = copyOf(d.TwoTransistor)
+		d.RailSink = copyOf(d.RailSink)
 		if d.FollowerSink != nil {
 			d.FollowerSink.Control.Divider = copyOf(d.FollowerSink.Control.Divider)
 		}

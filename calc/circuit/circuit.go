@@ -96,6 +96,9 @@ func (c *Circuit) Release(n Node, guess float64) {
 	c.v[n] = guess
 }
 
+// IsHeld says whether a node stands at a given voltage.
+func (c *Circuit) IsHeld(n Node) bool { return c.held[n] }
+
 // Guess sets where the search for a node's voltage starts, in volts.
 func (c *Circuit) Guess(n Node, volts float64) {
 	if !c.held[n] {
@@ -150,21 +153,24 @@ func (c *Circuit) ResistorPower(id ResistorID) float64 {
 // ClampID names a clamp of its circuit.
 type ClampID int
 
-// clamp conducts from its node to the return above volts and not below: a
-// Zener, a shunt reference or diodes as straight lines.
+// clamp holds its node at volts behind ohms: a Zener, a shunt reference or
+// diodes as a straight line.
 type clamp struct {
-	n            Node
+	n, feed      Node
 	volts, ohms  float64
 	current      float64
 	conductance  float64
 	tempco, rest float64
 }
 
-// Clamp adds a reference that holds a node down to volts at 25 °C, with a
-// slope resistance in ohms, moving by tempco in V/K with the air. It takes
-// current and gives none.
-func (c *Circuit) Clamp(n Node, volts, ohms, tempco float64) ClampID {
-	c.clamps = append(c.clamps, clamp{n: n, volts: volts, ohms: math.Max(ohms, stiffest), tempco: tempco})
+// Clamp adds a reference that holds a node at volts at 25 °C, with a slope
+// resistance in ohms, moving by tempco in V/K with the air. It stands while
+// the node feed, whence its bias comes, is above its voltage; below that it
+// only keeps the node from rising. A negative ClampCurrent means that the node
+// takes more than the bias brings: no real reference gives that, and the
+// caller has to say so.
+func (c *Circuit) Clamp(n, feed Node, volts, ohms, tempco float64) ClampID {
+	c.clamps = append(c.clamps, clamp{n: n, feed: feed, volts: volts, ohms: math.Max(ohms, stiffest), tempco: tempco})
 	return ClampID(len(c.clamps) - 1)
 }
 

@@ -204,7 +204,7 @@ func (c *Circuit) newton(worst *Unsolved) bool {
 		for i := range c.clamps {
 			k := &c.clamps[i]
 			was := k.conductance
-			k.step(c.air, c.v[k.n])
+			k.step(c.air, c.v[k.n], c.v[k.feed])
 			limited = limited || was != k.conductance
 		}
 		worst.Volts, worst.At = moved, c.name[at]
@@ -233,7 +233,7 @@ func (c *Circuit) assemble() {
 	}
 	for i := range c.clamps {
 		k := &c.clamps[i]
-		k.step(c.air, c.v[k.n])
+		k.step(c.air, c.v[k.n], c.v[k.feed])
 		g[int(k.n)*nodes+int(k.n)] += k.conductance
 		sum[k.n] += k.current
 	}

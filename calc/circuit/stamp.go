@@ -148,11 +148,12 @@ const (
 	melting = 900.  // °C between which a trial temperature stays
 )
 
-// step prepares a clamp's linear stand-in at the present node voltage.
-func (k *clamp) step(air, v float64) {
+// step prepares a clamp's linear stand-in at the present voltages of its node
+// and its feed.
+func (k *clamp) step(air, v, feed float64) {
 	hold := k.volts + k.tempco*(air-rated)
 	k.conductance, k.rest = dark, 0
-	if v > hold {
+	if v > hold || feed > hold {
 		k.conductance, k.rest = 1/k.ohms, hold/k.ohms
 	}
 	k.current = k.conductance*v - k.rest

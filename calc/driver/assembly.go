@@ -40,32 +40,40 @@ type Reference struct {
 	Ohms   float64 // [Ω]
 }
 
-// Assembly is one string as a circuit, ready to solve: hold Feed, set the air,
-// turn the knobs, call Net.Solve.
-type Assembly struct {
-	Net  *circuit.Circuit
-	Feed circuit.Node // the string's positive end, held
-	Tail circuit.Node // lower end of the LEDs
-	// Control, Base and Sense are circuit.None where the driver has none.
-	Control, Base, Sense circuit.Node
-
-	Stack   circuit.LEDsID
-	LEDs    []LED
+// Board is a circuit on its feed with its parts and the values that may be
+// off: what a string and a base rail have in common.
+type Board struct {
+	Net     *circuit.Circuit
+	Feed    circuit.Node // the positive end, held
 	Devices []Device
 	Knobs   []Knob
 
 	// Source is the node that the control voltage holds; circuit.None without.
 	Source circuit.Node
 
-	// Holder is the index in Devices of the part that holds the current, and
-	// SenseAt that of the resistor which measures it.
-	Holder, SenseAt int
-
+	stack    circuit.LEDsID
 	start    func(feed float64)
 	upstream circuit.Node
 	cable    circuit.ResistorID
 	behind   bool
 	extra    float64 // [A] drawn at the feed besides
+}
+
+// Assembly is one string as a circuit, ready to solve: hold Feed, set the air,
+// turn the knobs, call Net.Solve.
+type Assembly struct {
+	Board
+	Tail circuit.Node // lower end of the LEDs
+	// Control, Base and Sense are circuit.None where the driver has none, and
+	// so is Rail, the held node of a string on a base rail.
+	Control, Base, Sense, Rail circuit.Node
+
+	Stack circuit.LEDsID
+	LEDs  []LED
+
+	// Holder is the index in Devices of the part that holds the current, and
+	// SenseAt that of the resistor which measures it.
+	Holder, SenseAt int
 }
 
 // Knob is one value of a string that may be off.
@@ -91,7 +99,7 @@ const (
 func (k Knob) Turn(turn float64) { k.set(turn) }
 
 // FeedAt holds the string's feed at a voltage in volts.
-func (a *Assembly) FeedAt(volts float64) {
+func (a *Board) FeedAt(volts float64) {
 	if a.behind {
 		a.Net.Switch(a.cable, false)
 		a.Net.Draw(a.Feed, 0)
@@ -102,7 +110,7 @@ func (a *Assembly) FeedAt(volts float64) {
 
 // FeedBehind feeds the string through a resistance in ohms, above 0, from an
 // ideal voltage in volts; extra in amperes is drawn at the feed besides.
-func (a *Assembly) FeedBehind(volts, ohms, extra float64) {
+func (a *Board) FeedBehind(volts, ohms, extra float64) {
 	a.Net.Hold(a.upstream, volts)
 	a.Net.SetOhms(a.cable, ohms)
 	a.Net.Draw(a.Feed, extra)
@@ -116,7 +124,7 @@ func (a *Assembly) FeedBehind(volts, ohms, extra float64) {
 
 // Draw returns what the string takes from its feed in amperes, without what is
 // drawn there besides.
-func (a *Assembly) Draw() float64 {
+func (a *Board) Draw() float64 {
 	if a.behind {
 		return a.Net.ResistorCurrent(a.cable) - a.extra
 	}
@@ -131,27 +139,27 @@ type State struct {
 }
 
 // Save keeps the string's solution and feed, Load puts it back.
-func (a *Assembly) Save(s *State) {
+func (a *Board) Save(s *State) {
 	a.Net.Save(&s.net)
 	s.behind, s.extra = a.behind, a.extra
 }
 
 // Load puts the string back to what Save kept.
-func (a *Assembly) Load(s *State) {
+func (a *Board) Load(s *State) {
 	a.Net.Load(&s.net)
 	a.behind, a.extra = s.behind, s.extra
 	a.Net.Switch(a.cable, a.behind)
 }
 
 // Typical sets every knob to typical.
-func (a *Assembly) Typical() {
+func (a *Board) Typical() {
 	for _, k := range a.Knobs {
 		k.set(0)
 	}
 }
 
 // Start sets where a cold solve of the string at a feed voltage starts.
-func (a *Assembly) Start(feed float64) {
+func (a *Board) Start(feed float64) {
 	a.Net.Restart()
 	a.start(feed)
 }
@@ -175,10 +183,10 @@ const (
 
 // Power returns the dissipation in watts of one device at the last solution;
 // of LEDs alike, that of a single one.
-func (a *Assembly) Power(d Device) float64 {
+func (a *Board) Power(d Device) float64 {
 	switch d.kind {
 	case isLED:
-		return a.Net.LEDCurrent(a.Stack) * a.Net.LEDVoltage(a.Stack, d.id)
+		return a.Net.LEDCurrent(a.stack) * a.Net.LEDVoltage(a.stack, d.id)
 	case isBJT:
 		return a.Net.BJTPower(circuit.BJTID(d.id))
 	case isResistor:
@@ -190,10 +198,10 @@ func (a *Assembly) Power(d Device) float64 {
 
 // Junction returns the device's junction temperature in °C at the last
 // solution; what has no junction is at the air's.
-func (a *Assembly) Junction(d Device) float64 {
+func (a *Board) Junction(d Device) float64 {
 	switch d.kind {
 	case isLED:
-		return a.Net.LEDJunction(a.Stack, d.id)
+		return a.Net.LEDJunction(a.stack, d.id)
 	case isBJT:
 		return a.Net.BJTJunction(circuit.BJTID(d.id))
 	default:
@@ -211,15 +219,15 @@ func (d Device) IsResistor() bool { return d.kind == isResistor }
 func (d Device) IsLED() bool { return d.kind == isLED }
 
 // CollectorCurrent and BaseCurrent return a transistor's currents in amperes.
-func (a *Assembly) CollectorCurrent(d Device) float64 {
+func (a *Board) CollectorCurrent(d Device) float64 {
 	return a.Net.CollectorCurrent(circuit.BJTID(d.id))
 }
 
 // BaseCurrent returns a transistor's base current in amperes.
-func (a *Assembly) BaseCurrent(d Device) float64 { return a.Net.BaseCurrent(circuit.BJTID(d.id)) }
+func (a *Board) BaseCurrent(d Device) float64 { return a.Net.BaseCurrent(circuit.BJTID(d.id)) }
 
 // Current returns the current through a resistor in amperes.
-func (a *Assembly) Current(d Device) float64 {
+func (a *Board) Current(d Device) float64 {
 	return a.Net.ResistorCurrent(circuit.ResistorID(d.id))
 }
 
@@ -237,17 +245,24 @@ func (a *Assembly) LEDVolts() float64 {
 	return total
 }
 
-// newAssembly makes the feed, the tail and the LEDs between them.
-func newAssembly(leds []LED) *Assembly {
+// newBoard makes the feed with its cable.
+func newBoard() Board {
 	c := circuit.New()
-	a := &Assembly{
-		Net: c, LEDs: leds, Control: circuit.None, Base: circuit.None, Sense: circuit.None, Source: circuit.None,
-		Holder: -1, SenseAt: -1,
-	}
+	a := Board{Net: c, Source: circuit.None}
 	a.upstream = c.Held("upstream", 0)
 	a.Feed = c.Held("feed", 0)
 	a.cable = c.Resistor(a.upstream, a.Feed, 1)
 	c.Switch(a.cable, false)
+	return a
+}
+
+// newAssembly makes the feed, the tail and the LEDs between them.
+func newAssembly(leds []LED) *Assembly {
+	a := &Assembly{
+		Board: newBoard(), LEDs: leds, Holder: -1, SenseAt: -1,
+		Control: circuit.None, Base: circuit.None, Sense: circuit.None, Rail: circuit.None,
+	}
+	c := a.Net
 	a.Tail = c.Node("tail")
 	models := make([]device.LED, len(leds))
 	counts := make([]int, len(leds))
@@ -255,6 +270,7 @@ func newAssembly(leds []LED) *Assembly {
 		models[k], counts[k] = led.Model, led.Count
 	}
 	a.Stack = c.LEDs(a.Feed, a.Tail, models, counts)
+	a.stack = a.Stack
 	for k, led := range leds {
 		a.Devices = append(a.Devices, Device{Role: "led_" + led.Part, Part: led.Part, kind: isLED, id: k})
 		if led.Shift.Min != 0 || led.Shift.Max != 0 {
@@ -273,12 +289,12 @@ func at(r Range, turn float64) float64 {
 	return r.Typ + (r.Max-r.Typ)*turn
 }
 
-func (a *Assembly) knob(name string, culprit Culprit, set func(turn float64)) {
+func (a *Board) knob(name string, culprit Culprit, set func(turn float64)) {
 	a.Knobs = append(a.Knobs, Knob{Name: name, Culprit: culprit, set: set})
 }
 
 // resistor adds a resistor and its tolerance.
-func (a *Assembly) resistor(role string, from, to circuit.Node, r Resistance) int {
+func (a *Board) resistor(role string, from, to circuit.Node, r Resistance) int {
 	id := a.Net.Resistor(from, to, r.Ohms)
 	a.Devices = append(a.Devices, Device{Role: role, kind: isResistor, id: int(id)})
 	if r.Tolerance > 0 {
@@ -288,7 +304,7 @@ func (a *Assembly) resistor(role string, from, to circuit.Node, r Resistance) in
 }
 
 // transistor adds a transistor and its spreads.
-func (a *Assembly) transistor(role string, collector, base, emitter circuit.Node, q Transistor, pnp bool) int {
+func (a *Board) transistor(role string, collector, base, emitter circuit.Node, q Transistor, pnp bool) int {
 	id := a.Net.BJT(collector, base, emitter, q.Model, pnp, q.Rth)
 	a.Devices = append(a.Devices, Device{Role: role, Part: q.Part, kind: isBJT, id: int(id)})
 	gain, vbe := 1.0, 0.0
@@ -308,8 +324,8 @@ func (a *Assembly) transistor(role string, collector, base, emitter circuit.Node
 }
 
 // reference adds a reference and its spread.
-func (a *Assembly) reference(n circuit.Node, r Reference) {
-	id := a.Net.Clamp(n, r.Volts.Typ, r.Ohms, r.Tempco)
+func (a *Board) reference(n circuit.Node, r Reference) {
+	id := a.Net.Clamp(n, a.Feed, r.Volts.Typ, r.Ohms, r.Tempco)
 	a.Devices = append(a.Devices, Device{Role: "reference", kind: isReference, id: int(id)})
 	if r.Volts.Min != r.Volts.Max {
 		a.knob("reference", Setting, func(turn float64) { a.Net.SetClamp(id, at(r.Volts, turn)) })

@@ -12,7 +12,7 @@ type Control struct {
 }
 
 // control adds the control and returns its node.
-func (a *Assembly) control(ctl Control) circuit.Node {
+func (a *Board) control(ctl Control) circuit.Node {
 	c := a.Net
 	if ctl.Lower.Ohms > 0 {
 		n := c.Node("control")

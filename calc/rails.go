@@ -1,0 +1,240 @@
+package calc
+
+import (
+	"errors"
+	"math"
+
+	"lanternbook/calc/driver"
+	"lanternbook/calc/spread"
+)
+
+// railLine is one base rail of the plant with the strings that hang on it.
+type railLine struct {
+	*driver.Rail
+	index   int
+	spec    *Rail
+	run     int // index in the tree, −1 at the supply
+	path    float64
+	lines   []*line
+	volts   float64 // [V] at which rail and strings balance
+	started bool
+	turned  []float64
+	typ     []float64 // figures with everything typical
+	// loads are the least, typical and most base current of all strings [A].
+	loads Spread
+	// reach is the rail's voltage at the least, typical and highest ambient.
+	reach [3]Spread
+	worst *spread.Extremes
+}
+
+// The figures of a rail; behind them stand each device's power and junction.
+const (
+	railVolts = iota // [V]
+	railDraw         // [A] from the feed
+	railDrive        // [A] through pull-up or bias
+	railSpare        // [A] of that left for the follower or reference
+	railDevices
+)
+
+// wireRail makes a rail's circuit.
+func (p *plant) wireRail(i int) *railLine {
+	b := p.build
+	spec := &b.Rails[i]
+	r := &railLine{index: i, spec: spec, run: -1}
+	if spec.FedBy != "" && spec.FedBy != "supply" {
+		r.run = p.runAt[spec.FedBy]
+	}
+	var l line // gathers what its transistors had to assume
+	switch spec.Kind {
+	case "follower":
+		r.Rail = driver.FollowerRail(control(*spec.Control), l.transistor(b, spec.PNP), resistance(*spec.Pullup))
+	case "reference":
+		r.Rail = driver.ReferenceRail(reference(*spec.Reference), resistance(*spec.Bias))
+	default:
+		r.Rail = driver.BufferedRail(reference(*spec.Reference), resistance(*spec.Bias), l.transistor(b, spec.NPN), resistance(*spec.Pulldown))
+	}
+	r.turned = make([]float64, len(r.Knobs))
+	return r
+}
+
+func reference(r Reference) driver.Reference {
+	return driver.Reference{Volts: limits(r.Volts), Tempco: r.Tempco, Ohms: r.Ohms}
+}
+
+// name is how findings call the rail.
+func (r *railLine) name() string { return "rail " + r.spec.ID }
+
+// feedAt puts the rail's own feed at a voltage in volts.
+func (r *railLine) feedAt(feed float64) error {
+	if !r.started {
+		r.Net.Release(r.Out, 0)
+		r.Start(feed)
+		r.FeedAt(feed)
+		if err := r.Net.Solve(); err != nil {
+			return &Unsolved{r.name(), err}
+		}
+		r.volts = r.Net.Voltage(r.Out)
+		r.started = true
+	}
+	r.FeedAt(feed)
+	return nil
+}
+
+// balance finds the rail's voltage at which what rail and strings take adds up
+// to nothing: Newton's method kept inside a bracket, since every string takes
+// more from a higher rail.
+func (r *railLine) balance() error {
+	low, high := 0.0, math.Max(r.Net.Voltage(r.Feed), 0)
+	for _, l := range r.lines {
+		high = math.Max(high, l.Net.Voltage(l.Feed))
+	}
+	v := math.Min(r.volts, high)
+	for range treePatience {
+		r.Net.Hold(r.Out, v)
+		if err := r.Net.Solve(); err != nil {
+			return &Unsolved{r.name(), err}
+		}
+		takes, slope := r.Net.HeldCurrent(r.Out), r.Net.HeldSlope(r.Out)
+		for _, l := range r.lines {
+			l.Net.Hold(l.Rail, v)
+			if err := l.solve(); err != nil {
+				return err
+			}
+			takes += l.quantity * l.Net.HeldCurrent(l.Rail)
+			slope += l.quantity * l.Net.HeldSlope(l.Rail)
+		}
+		if takes > 0 {
+			high = v
+		} else {
+			low = v
+		}
+		next := v - takes/slope
+		if !(next >= low && next <= high) {
+			next = (low + high) / 2
+		}
+		if math.Abs(next-v) < treeRest {
+			r.volts = v
+			return nil
+		}
+		v = next
+	}
+	return &Unsolved{r.name(), errors.New("rail and strings do not settle")}
+}
+
+// collect reads the rail's figures at its present solution.
+func (r *railLine) collect(out []float64) {
+	out[railVolts] = r.Net.Voltage(r.Out)
+	out[railDraw] = r.Draw()
+	out[railDrive], out[railSpare] = 0, 0
+	for k, d := range r.Devices {
+		if d.Role == "pullup_resistor" || d.Role == "bias_resistor" {
+			out[railDrive] = r.Current(d)
+			out[railSpare] = out[railDrive]
+		}
+		out[railDevices+2*k] = r.Power(d)
+		out[railDevices+2*k+1] = r.Junction(d)
+	}
+	for _, d := range r.Devices {
+		if d.Role == "follower_transistor" && r.spec.Kind == "buffered-reference" {
+			out[railSpare] -= r.BaseCurrent(d)
+		}
+	}
+	if r.spec.Kind != "buffered-reference" {
+		out[railSpare] -= r.load()
+	}
+}
+
+// load is what all strings take from the rail in amperes.
+func (r *railLine) load() float64 {
+	total := 0.0
+	for _, l := range r.lines {
+		total += l.quantity * l.Net.HeldCurrent(l.Rail)
+	}
+	return total
+}
+
+func (r *railLine) figures() int { return railDevices + 2*len(r.Devices) }
+
+// solveFree solves the rail with its voltage free and a load in amperes.
+func (r *railLine) solveFree(load, volts, ohms, air float64) error {
+	if r.Net.IsHeld(r.Out) {
+		r.Net.Release(r.Out, r.volts)
+	}
+	r.Net.Draw(r.Out, load)
+	r.Net.SetAir(air)
+	if ohms == 0 {
+		r.FeedAt(volts)
+	} else {
+		r.FeedBehind(volts, ohms, 0)
+	}
+	if err := r.Net.Solve(); err != nil {
+		return &Unsolved{r.name(), err}
+	}
+	return nil
+}
+
+// extremes finds how far the rail's own values, its supply, the ambient and
+// the gain of the strings' transistors move its voltage, at each ambient, and
+// the worst case of its parts. The strings' base currents are taken at their
+// own extremes.
+func (r *railLine) extremes(reach reach) error {
+	n := len(r.Knobs)
+	solve := func(turn []float64, load, supply, ambient float64) error {
+		for k, knob := range r.Knobs {
+			if r.turned[k] != turn[k] {
+				knob.Turn(turn[k])
+				r.turned[k] = turn[k]
+			}
+		}
+		c := reach.at(supply, ambient)
+		return r.solveFree(between(r.loads, load), c.volts, c.ohms, c.inside)
+	}
+	for side := range 3 {
+		x, err := spread.Find(n+2, 1, func(turn, out []float64) error {
+			err := solve(turn, turn[n], turn[n+1], float64(side-1))
+			out[0] = r.Net.Voltage(r.Out)
+			return err
+		})
+		if err != nil {
+			return err
+		}
+		r.reach[side] = Spread{Min: x.Min[0], Typ: x.Typ[0], Max: x.Max[0]}
+	}
+	var err error
+	r.worst, err = spread.Find(n+3, r.figures(), func(turn, out []float64) error {
+		err := solve(turn, turn[n], turn[n+1], turn[n+2])
+		r.collect(out)
+		if r.spec.Kind != "buffered-reference" {
+			out[railSpare] = out[railDrive] - between(r.loads, turn[n])
+		}
+		return err
+	})
+	for k, knob := range r.Knobs {
+		knob.Turn(0)
+		r.turned[k] = 0
+	}
+	return err
+}
+
+// atAmbient returns the rail's reach at a turn of the ambient.
+func (r *railLine) atAmbient(turn float64) Spread {
+	mix := func(pick func(Spread) float64) float64 {
+		mid := pick(r.reach[1])
+		if turn < 0 {
+			return mid + (mid-pick(r.reach[0]))*turn
+		}
+		return mid + (pick(r.reach[2])-mid)*turn
+	}
+	return Spread{
+		Min: mix(func(s Spread) float64 { return s.Min }),
+		Typ: mix(func(s Spread) float64 { return s.Typ }),
+		Max: mix(func(s Spread) float64 { return s.Max }),
+	}
+}
+
+// ranged returns a figure of the rail with its typical value from the build
+// solved as a whole.
+func (r *railLine) ranged(f int) Range {
+	typ := r.typ[f]
+	return Range{Min: math.Min(r.worst.Min[f], typ), Typ: typ, Max: math.Max(r.worst.Max[f], typ)}
+}
