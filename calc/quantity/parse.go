@@ -106,14 +106,14 @@ func (u unit) value(r reading) (float64, error) {
 	if v == 0 && strings.ContainsAny(r.digits, "123456789") {
 		return 0, fmt.Errorf("%q is too small", r.whole)
 	}
-	v += s.zero
+	v += s.zero // also turns a negative zero into zero
 	if s.factor != 0 {
 		v *= s.factor
 	}
 	if math.IsInf(v, 0) {
 		return 0, fmt.Errorf("%q is too large", r.whole)
 	}
-	return v + 0, nil // + 0 turns a negative zero into zero
+	return v, nil
 }
 
 // strange says what is wrong with the unit of a reading.

@@ -44,6 +44,7 @@ func TestNearest(t *testing.T) {
 		{name: "between two", series: "E24", v: 112, below: 110, above: 120},
 		{name: "a preferred number itself", series: "E24", v: 110, below: 110, above: 110},
 		{name: "one as a formula rounds it", series: "E24", v: 110.00000000001, below: 110, above: 110},
+		{name: "one as a formula rounds it down", series: "E24", v: 109.99999999999, below: 110, above: 110},
 		{name: "close to one, not it", series: "E96", v: 110.001, below: 110, above: 113},
 		{name: "across the decade", series: "E24", v: 95, below: 91, above: 100},
 		{name: "just below a decade", series: "E3", v: 999.9999, below: 470, above: 1000},

@@ -54,9 +54,9 @@ func TestParseSpread(t *testing.T) {
 			if err != nil {
 				t.Fatal(err)
 			}
-			near(t, "min", got.Min, c.want.Min, 1e-12)
-			near(t, "typ", got.Typ, c.want.Typ, 1e-12)
-			near(t, "max", got.Max, c.want.Max, 1e-12)
+			near(t, "min", got.Min, c.want.Min, 0)
+			near(t, "typ", got.Typ, c.want.Typ, 0)
+			near(t, "max", got.Max, c.want.Max, 0)
 			if got.Bare != c.want.Bare {
 				t.Errorf("bare = %v, want %v", got.Bare, c.want.Bare)
 			}
