@@ -67,7 +67,7 @@ type Worst struct {
 // must be the build's own.
 func NewPicture(b calc.Build, r calc.Report, corner string, f Frame) PictureView {
 	s := Scale{Top: highest(b, r), Foot: f.Foot, Margin: f.Margin}
-	v := PictureView{Frame: f, Scale: s, Crowded: len(r.Strings) > 12}
+	v := PictureView{Frame: f, Scale: s, Crowded: len(r.Strings) > mostAbreast}
 	feed := b.Supply.Voltage.Typ
 	for i, str := range r.Strings {
 		c := atCorner(str.Columns, corner)
@@ -149,9 +149,9 @@ func column(b calc.Build, i int, r calc.StringReport, c calc.Column, s Scale, f 
 func pieces(b calc.Build, i int, c calc.Column, at string) []piece {
 	driver := b.Strings[i].Driver
 	list := []piece{
-		{kind: "sense", volts: c.Sense, count: 1, name: senseName(driver), href: link(at + senseField(driver)),
+		{kind: "sense", volts: c.Sense, count: 1, name: senseName(driver), href: fieldLink(at + senseField(driver)),
 			voice: senseName(driver) + " resistor, " + quantity.Format(c.Sense, quantity.Volt, 3)},
-		{kind: "driver", volts: c.Driver, count: 1, name: "driver", href: link(at + holderField(driver)),
+		{kind: "driver", volts: c.Driver, count: 1, name: "driver", href: fieldLink(at + holderField(driver)),
 			voice: "least the driver needs, " + quantity.Format(c.Driver, quantity.Volt, 3)},
 		{kind: "left", volts: c.LeftOver, count: 1, name: "left over", href: "#string-" + strings.TrimPrefix(at, "/strings/"),
 			voice: "left over, " + quantity.Format(c.LeftOver, quantity.Volt, 3)},
@@ -165,17 +165,17 @@ func pieces(b calc.Build, i int, c calc.Column, at string) []piece {
 		}
 		list = append(list, piece{
 			kind: "led", volts: total, count: max(led.Quantity, 1), name: light.Word, light: light,
-			href: link(at + "/leds/" + strconv.Itoa(j) + "/quantity"),
+			href: fieldLink(at + "/leds/" + strconv.Itoa(j) + "/quantity"),
 			voice: fmt.Sprintf("%d × %s, %s each, %s together", led.Quantity, name,
 				quantity.Format(led.Each, quantity.Volt, 3), quantity.Format(total, quantity.Volt, 3)),
 		})
 	}
-	return append(list, piece{kind: "run", volts: c.Run, count: 1, name: "run", href: link(at + "/fed_by"),
+	return append(list, piece{kind: "run", volts: c.Run, count: 1, name: "run", href: fieldLink(at + "/fed_by"),
 		voice: "lost in the run and the supply's own resistance, " + quantity.Format(c.Run, quantity.Volt, 2)})
 }
 
-// link is the address of a field on this page.
-func link(name string) string { return "#" + FieldID(name) }
+// fieldLink is the address of a field on this page.
+func fieldLink(name string) string { return "#" + FieldID(name) }
 
 // senseName is what the resistor at the foot is called.
 func senseName(d calc.Driver) string {
@@ -237,7 +237,6 @@ func holder(b calc.Build, i int) string {
 	}
 	return partName(key, b.Parts[key])
 }
-
 
 // leftOver says what is left over in this corner, and how that is to be seen:
 // "pass", "tight" when it is less than the shop asks for, "fail" below 0.

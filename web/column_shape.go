@@ -19,26 +19,40 @@ type Frame struct {
 	Margin Px     // where the axis ends: above it is room for words
 }
 
-// The frames that the build page uses, by how many columns it shows.
+// The frames in which there is room beside the blocks.
 var (
-	WideFrame   = Frame{Name: "wide", Width: 228, Left: 26, Block: 118, Notes: true, Height: 506, Foot: 500, Margin: 44}
-	MiddleFrame = Frame{Name: "middle", Width: 178, Left: 22, Block: 92, Notes: true, Height: 506, Foot: 500, Margin: 44}
-	NarrowFrame = Frame{Name: "narrow", Width: 116, Left: 20, Block: 88, Height: 506, Foot: 500, Margin: 44}
-	SlimFrame   = Frame{Name: "slim", Width: 64, Left: 11, Block: 48, Height: 506, Foot: 500, Margin: 44}
+	WideFrame   = frame("wide", 228, 26, 118)
+	MiddleFrame = frame("middle", 178, 22, 92)
+)
+
+func frame(name string, width, left, block Px) Frame {
+	return Frame{Name: name, Width: width, Left: left, Block: block, Notes: width > left+block+40, Height: 506, Foot: 500, Margin: 44}
+}
+
+const (
+	pageWide     Px = 724 // what all columns have on a page of 1440 pixels
+	slimmest     Px = 60  // what one needs at least
+	narrowest    Px = 90  // from here on captions fit in lines
+	mostAbreast     = 12  // columns side by side; beyond them the picture scrolls
+	columnMargin Px = 6   // to the right of a block without notes
 )
 
 // FrameFor returns the frame in which so many columns stand side by side on a
-// wide page. Beyond twelve the picture scrolls.
+// wide page.
 func FrameFor(columns int) Frame {
 	switch {
 	case columns <= 3:
 		return WideFrame
 	case columns == 4:
 		return MiddleFrame
-	case columns <= 6:
-		return NarrowFrame
 	}
-	return SlimFrame
+	width := max(pageWide/Px(columns), slimmest)
+	left := min(max(width/6, 11), 20)
+	name := "narrow"
+	if width < narrowest {
+		name = "slim"
+	}
+	return frame(name, width, left, width-left-columnMargin)
 }
 
 const (
@@ -116,7 +130,7 @@ func stack(pieces []piece, s Scale, f Frame, supply Px) (blocks []Block, notes [
 			b.Ticks = append(b.Ticks, s.Y(top+float64(i)*each))
 		}
 		if b.Name == "" && b.Figure == "" && f.Notes {
-			notes = append(notes, Note{From: b.Y + b.Tall/2, Text: text + p.name + " " + volts(each)})
+			notes = append(notes, Note{From: b.Y + b.Tall/2, Text: text + p.name + " " + figureVolts(each)})
 		}
 		blocks = append(blocks, b)
 		top += p.volts
@@ -131,9 +145,9 @@ func block(p piece, v float64, times string, from float64, s Scale, f Frame) Blo
 		Kind: p.kind, Volts: v, Y: s.Y(from + v), Tall: s.Tall(v),
 		Fill: p.light.Fill, Ink: p.light.Ink, Href: p.href, Voice: p.voice,
 	}
-	figure := volts(v)
+	figure := figureVolts(v)
 	if times != "" {
-		figure = times + volts(v/float64(p.count))
+		figure = times + figureVolts(v/float64(p.count))
 	}
 	middle := b.Y + b.Tall/2
 	room := f.Block - 2*wordsPad
@@ -176,17 +190,35 @@ func spreadNotes(notes []Note, f Frame, supply Px) {
 	}
 }
 
-// How much room words take, estimated on the safe side from the faces used:
-// the words' advance is 0.44 em on average at 14 px, the figures' exactly
-// 0.6 em at 12.5 px.
+// How much room words take inside a block.
 const (
 	wordsPad     Px = 7
 	wordsGap     Px = 6
-	wordAdvance  Px = 6.6
-	digitAdvance Px = 7.5
+	wordsSize    Px = 14  // of names
+	digitAdvance Px = 7.5 // of figures, 0.6 em at 12.5 px exactly
 )
 
-func wordsWide(s string) Px  { return Px(len([]rune(s))) * wordAdvance }
+// advances are the widths of the printable ASCII letters from the blank on, in
+// hundredths of an em, as measured in the face and weight of the names. Others
+// count as wide as a capital.
+var advances = [...]Px{
+	20, 24, 35, 57, 60, 89, 63, 19, 26, 26, 40, 57, 24, 46, 24, 36, 56, 45, 52, 53, 53, 51, 55, 51, 55, 56, 24, 24, 57, 57, 57, 46,
+	94, 55, 55, 61, 61, 51, 49, 62, 63, 25, 25, 57, 46, 74, 63, 61, 53, 61, 58, 54, 52, 62, 57, 82, 54, 52, 52, 26, 36, 26, 49, 50,
+	22, 48, 51, 50, 52, 50, 36, 49, 53, 23, 23, 48, 23, 80, 53, 51, 51, 52, 35, 44, 38, 52, 48, 69, 47, 48, 45, 27, 25, 27, 57,
+}
+
+func wordsWide(s string) Px {
+	var sum Px
+	for _, r := range s {
+		if i := int(r) - ' '; i >= 0 && i < len(advances) {
+			sum += advances[i]
+		} else {
+			sum += 62
+		}
+	}
+	return sum * wordsSize / 100
+}
+
 func figureWide(s string) Px { return Px(len([]rune(s))) * digitAdvance }
 
 // shorten cuts words to the room there is, with an ellipsis; less than three
@@ -195,15 +227,17 @@ func shorten(s string, room Px) string {
 	if wordsWide(s) <= room {
 		return s
 	}
-	letters := int(room/wordAdvance) - 1
-	if letters < 3 {
-		return ""
+	letters := []rune(s)
+	for n := len(letters) - 1; n >= 3; n-- {
+		if cut := strings.TrimRight(string(letters[:n]), " ,") + "…"; wordsWide(cut) <= room {
+			return cut
+		}
 	}
-	return strings.TrimRight(string([]rune(s)[:letters]), " ,") + "…"
+	return ""
 }
 
-// volts writes a voltage inside the picture, whose axis says the unit.
-func volts(v float64) string {
+// figureVolts writes a voltage inside the picture, whose axis says the unit.
+func figureVolts(v float64) string {
 	text := strconv.FormatFloat(v, 'f', 2, 64)
 	if strings.Trim(text, "-0.") == "" {
 		return "0.00"

@@ -66,7 +66,7 @@ var harbour = []someString{
 var harbourSupply = calc.Spread{Min: 23.5, Typ: 24, Max: 24.5}
 
 // frames are all the widths in which a column is drawn.
-var frames = []web.Frame{web.WideFrame, web.MiddleFrame, web.NarrowFrame, web.SlimFrame}
+var frames = []web.Frame{web.FrameFor(1), web.FrameFor(4), web.FrameFor(6), web.FrameFor(9), web.FrameFor(40)}
 
 // Every block is as tall as its voltage on the one scale, stands on the one
 // below it, and together they reach the supply, or above it by what is missing.
@@ -160,6 +160,22 @@ func TestColumnWordsDoNotOverlap(t *testing.T) {
 	}
 }
 
+// As many columns as stand side by side fill the page and do not overflow it.
+func TestFrameFor(t *testing.T) {
+	for n := 1; n <= 12; n++ {
+		f := web.FrameFor(n)
+		if total := f.Width * web.Px(n); total > 724 {
+			t.Errorf("%d columns are %v wide", n, total)
+		}
+		if f.Left+f.Block > f.Width || f.Block < 40 {
+			t.Errorf("%d columns: block of %v from %v in %v", n, f.Block, f.Left, f.Width)
+		}
+	}
+	if web.FrameFor(13).Width != web.FrameFor(300).Width {
+		t.Error("columns go on shrinking where the picture scrolls")
+	}
+}
+
 func TestColumnMergesThinLEDs(t *testing.T) {
 	long := someString{supply: 48, run: 0.1, driver: 0.2, sense: 1, leds: []calc.ColumnLED{{Part: "red", Quantity: 20, Each: 2.1}}}
 	_, _, v := picture(web.Usual, web.WideFrame, calc.Exactly(48), long)
@@ -195,7 +211,7 @@ func TestColumnLinksToItsFields(t *testing.T) {
 			got = append(got, b.Href)
 		}
 	}
-	want := "#f--strings-0-driver-sense-ohms #f--strings-0-driver-pass #string-0 #f--strings-0-leds-0-quantity #f--strings-0-fed-by"
+	want := "#f-strings-0-driver-sense-ohms #f-strings-0-driver-pass #string-0 #f-strings-0-leds-0-quantity #f-strings-0-fed-by"
 	if strings.Join(got, " ") != want {
 		t.Errorf("links %v, want %s", got, want)
 	}
@@ -245,7 +261,7 @@ func TestPictureOfNothing(t *testing.T) {
 	if len(v.Ticks) == 0 || !(v.Scale.Top > 0) {
 		t.Errorf("no axis: %+v", v.Scale)
 	}
-	_, _, v = picture(web.Hot, web.SlimFrame, calc.Exactly(0), someString{})
+	_, _, v = picture(web.Hot, web.FrameFor(12), calc.Exactly(0), someString{})
 	if len(v.Columns) != 1 {
 		t.Errorf("%d columns, want 1", len(v.Columns))
 	}

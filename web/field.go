@@ -17,6 +17,7 @@ type FieldView struct {
 	Offers      []Offer       // buttons that put a value into this field
 	Layout      string        // "" beside its label, "tall" below it, "bare-label" with the label for screen readers alone
 	Required    bool
+	Rebuilds    bool // a list whose choice changes which other fields there are
 }
 
 // OptionGroup is a headed part of a list; without a Label it stands unheaded.
@@ -37,15 +38,16 @@ type Offer struct {
 	Gives string // what that would give, "34.1 mA"
 }
 
-// FieldID returns the id of the input with this form name. Ids hold letters,
-// digits and dashes alone, so that a style sheet or a script can name them.
+// FieldID returns the id of the input with this form name; a slash at its
+// start, as JSON Pointers have, is left out. Ids hold letters, digits and
+// dashes alone, so that a style sheet or a script can name them.
 func FieldID(name string) string {
 	return "f-" + strings.Map(func(r rune) rune {
 		if r >= 'a' && r <= 'z' || r >= 'A' && r <= 'Z' || r >= '0' && r <= '9' || r == '-' {
 			return r
 		}
 		return '-'
-	}, name)
+	}, strings.TrimPrefix(name, "/"))
 }
 
 // ID is the id of the input.
