@@ -35,26 +35,25 @@ func (s *Store) Backup(ctx context.Context, path string) (err error) {
 }
 
 // copyFile copies what source has open to a new file at path.
-func copyFile(ctx context.Context, source *sql.Conn, path string) (err error) {
-	if _, err := os.Lstat(path); err == nil {
+func copyFile(ctx context.Context, source *sql.Conn, path string) error {
+	if exists(path) {
 		return &fs.PathError{Op: "create", Path: path, Err: fs.ErrExist} // before the long work
 	}
 	temporary, err := os.CreateTemp(filepath.Dir(path), filepath.Base(path)+".part-*")
 	if err != nil {
 		return err
 	}
-	defer func() {
-		if err != nil {
-			_ = os.Remove(temporary.Name()) // the first error is the one to tell
-		}
-	}()
-	if err := temporary.Close(); err != nil {
-		return err
+	err = temporary.Close()
+	if err == nil {
+		err = fill(ctx, temporary.Name(), source)
 	}
-	if err := fill(ctx, temporary.Name(), source); err != nil {
-		return err
+	if err == nil {
+		err = publish(temporary.Name(), path)
 	}
-	return publish(temporary.Name(), path)
+	if err != nil {
+		_ = os.Remove(temporary.Name()) // the first error is the one to tell
+	}
+	return err
 }
 
 // fill copies what source has open into the empty file at path.
@@ -123,7 +122,8 @@ func publish(temporary, path string) error {
 	if err != nil {
 		return err
 	}
-	if err := errors.Join(claim.Close(), os.Rename(temporary, path)); err != nil {
+	err = errors.Join(claim.Close(), os.Rename(temporary, path))
+	if err != nil {
 		return errors.Join(err, os.Remove(path))
 	}
 	folder, err := os.Open(filepath.Dir(path))

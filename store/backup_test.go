@@ -17,9 +17,7 @@ func TestBackupHoldsEverything(t *testing.T) {
 	s := openStore(t, schemaOne(t), new(clock).now)
 	folder := t.TempDir()
 	path := filepath.Join(folder, "copy.db")
-	if err := s.Backup(t.Context(), path); err != nil {
-		t.Fatal(err)
-	}
+	must(t, s.Backup(t.Context(), path))
 	if diff := cmp.Diff([]string{"copy.db"}, files(t, folder)); diff != "" {
 		t.Errorf("files (-want +got):\n%s", diff)
 	}
@@ -146,9 +144,7 @@ func TestBackupUnderWrites(t *testing.T) {
 	group.Wait()
 	for i, b := range builds {
 		now, err := s.Build(t.Context(), b.ID)
-		if err != nil {
-			t.Fatal(err)
-		}
+		must(t, err)
 		if seen[i] < 1 || now.Revision < seen[i] {
 			t.Errorf("build %d: a backup holds revision %d, the store %d", b.ID, seen[i], now.Revision)
 		}

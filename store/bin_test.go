@@ -15,28 +15,23 @@ func TestDeletedBuildComesBackWhole(t *testing.T) {
 	s := newStore(t)
 	b := save(t, s, create(t, s, 1), 2)
 	history, err := s.Revisions(t.Context(), b.ID)
-	if err != nil {
-		t.Fatal(err)
-	}
-	if err := s.DeleteBuild(t.Context(), b.ID); err != nil {
-		t.Fatal(err)
-	}
-	if builds, err := s.Builds(t.Context(), ""); err != nil || len(builds) != 0 {
-		t.Errorf("Builds = %d builds, %v, want none", len(builds), err)
+	must(t, err)
+	must(t, s.DeleteBuild(t.Context(), b.ID))
+	builds, err := s.Builds(t.Context(), "")
+	must(t, err)
+	if len(builds) != 0 {
+		t.Errorf("Builds = %d builds, want none", len(builds))
 	}
 	for range 2 { // restoring what is there changes nothing
-		restored, err := s.RestoreBuild(t.Context(), b.ID)
-		if err != nil {
-			t.Fatal(err)
-		}
+		var restored store.Build
+		restored, err = s.RestoreBuild(t.Context(), b.ID)
+		must(t, err)
 		if diff := cmp.Diff(b, restored); diff != "" {
 			t.Errorf("RestoreBuild (-want +got):\n%s", diff)
 		}
 	}
 	again, err := s.Revisions(t.Context(), b.ID)
-	if err != nil {
-		t.Fatal(err)
-	}
+	must(t, err)
 	if diff := cmp.Diff(history, again); diff != "" {
 		t.Errorf("history (-want +got):\n%s", diff)
 	}
@@ -61,26 +56,20 @@ func TestTheBinIsEmptiedAfterThirtyDays(t *testing.T) {
 		t.Run(c.name, func(t *testing.T) {
 			path := filepath.Join(t.TempDir(), "book.db")
 			ticking := new(clock)
-			s, err := store.Open(t.Context(), path, ticking.now)
-			if err != nil {
-				t.Fatal(err)
-			}
+			s := openBriefly(t, path, ticking.now)
 			b, stays := save(t, s, create(t, s, 1), 2), create(t, s, 3)
-			if _, err := s.CreatePart(t.Context(), "white", []byte(`{"type":"led"}`)); err != nil {
-				t.Fatal(err)
-			}
-			if err := errors.Join(s.DeleteBuild(t.Context(), b.ID), s.DeletePart(t.Context(), "white"), s.Close()); err != nil {
-				t.Fatal(err)
-			}
+			_, err := s.CreatePart(t.Context(), "white", []byte(`{"type":"led"}`))
+			must(t, err)
+			must(t, errors.Join(s.DeleteBuild(t.Context(), b.ID), s.DeletePart(t.Context(), "white"), s.Close()))
 			ticking.pass(c.wait)
 			s = openStore(t, path, ticking.now)
-			if _, err := s.RestoreBuild(t.Context(), b.ID); !errors.Is(err, c.want) {
+			if _, err = s.RestoreBuild(t.Context(), b.ID); !errors.Is(err, c.want) {
 				t.Errorf("RestoreBuild: error = %v, want %v", err, c.want)
 			}
-			if _, err := s.RestorePart(t.Context(), "white"); !errors.Is(err, c.want) {
+			if _, err = s.RestorePart(t.Context(), "white"); !errors.Is(err, c.want) {
 				t.Errorf("RestorePart: error = %v, want %v", err, c.want)
 			}
-			if _, err := s.Build(t.Context(), stays.ID); err != nil {
+			if _, err = s.Build(t.Context(), stays.ID); err != nil {
 				t.Errorf("the build on the shelf: %v", err)
 			}
 			var left int
@@ -96,14 +85,9 @@ func TestTheBinIsEmptiedAfterThirtyDays(t *testing.T) {
 func TestNumbersOfPurgedBuildsAreNotGivenAgain(t *testing.T) {
 	path := filepath.Join(t.TempDir(), "book.db")
 	ticking := new(clock)
-	s, err := store.Open(t.Context(), path, ticking.now)
-	if err != nil {
-		t.Fatal(err)
-	}
+	s := openBriefly(t, path, ticking.now)
 	b := create(t, s, 1)
-	if err := errors.Join(s.DeleteBuild(t.Context(), b.ID), s.Close()); err != nil {
-		t.Fatal(err)
-	}
+	must(t, errors.Join(s.DeleteBuild(t.Context(), b.ID), s.Close()))
 	ticking.pass(31 * 24 * time.Hour)
 	s = openStore(t, path, ticking.now)
 	if empty, err := s.Empty(t.Context()); err != nil || empty {

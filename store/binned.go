@@ -35,10 +35,10 @@ func (s *Store) Binned(ctx context.Context) (bin Binned, err error) {
 		ORDER BY deleted_at DESC, id DESC`, func(rows *sql.Rows) error {
 		var b BinnedBuild
 		var deleted int64
-		err := rows.Scan(&b.ID, &b.Title, &b.Client, &b.Site, &deleted)
+		failed := rows.Scan(&b.ID, &b.Title, &b.Client, &b.Site, &deleted)
 		b.Deleted = moment(deleted)
 		bin.Builds = append(bin.Builds, b)
-		return err
+		return failed
 	})
 	if err != nil {
 		return Binned{}, err
@@ -52,28 +52,13 @@ func (s *Store) Binned(ctx context.Context) (bin Binned, err error) {
 		ORDER BY deleted_at DESC, id DESC`, func(rows *sql.Rows) error {
 		var p BinnedPart
 		var deleted int64
-		err := rows.Scan(&p.Key, &p.Type, &p.Name, &deleted)
+		failed := rows.Scan(&p.Key, &p.Type, &p.Name, &deleted)
 		p.Deleted = moment(deleted)
 		bin.Parts = append(bin.Parts, p)
-		return err
+		return failed
 	})
 	if err != nil {
 		return Binned{}, err
 	}
 	return bin, nil
-}
-
-// each runs a query and calls do for every row.
-func (s *Store) each(ctx context.Context, query string, do func(*sql.Rows) error) error {
-	rows, err := s.reader.QueryContext(ctx, query)
-	if err != nil {
-		return err
-	}
-	defer func() { _ = rows.Close() }() // rows.Err tells
-	for rows.Next() {
-		if err := do(rows); err != nil {
-			return err
-		}
-	}
-	return rows.Err()
 }

@@ -19,39 +19,37 @@ func TestBinned(t *testing.T) {
 	if err != nil {
 		t.Fatal(err)
 	}
-	t.Cleanup(func() {
-		if err := s.Close(); err != nil {
-			t.Error(err)
-		}
-	})
-	if bin, err := s.Binned(ctx); err != nil || len(bin.Builds)+len(bin.Parts) != 0 {
+	t.Cleanup(func() { must(t, s.Close()) })
+	bin, err := s.Binned(ctx)
+	if err != nil || len(bin.Builds)+len(bin.Parts) != 0 {
 		t.Fatalf("a new bin: %+v, %v", bin, err)
 	}
 
 	var ids []int64
 	for _, title := range []string{"stays", "goes first", "goes last"} {
-		b, err := s.CreateBuild(ctx, []byte("{}"), store.Summary{Title: title, Client: "club", Site: "hall", Verdict: "pass"})
+		var b store.Build
+		b, err = s.CreateBuild(ctx, []byte("{}"), store.Summary{Title: title, Client: "club", Site: "hall", Verdict: "pass"})
 		if err != nil {
 			t.Fatal(err)
 		}
 		ids = append(ids, b.ID)
 	}
 	for _, id := range ids[1:] {
-		if err := s.DeleteBuild(ctx, id); err != nil {
+		if err = s.DeleteBuild(ctx, id); err != nil {
 			t.Fatal(err)
 		}
 	}
 	// One key deleted twice: only the later of the two can be brought back.
 	for _, name := range []string{"older", "newer"} {
-		if _, err := s.CreatePart(ctx, "bc547b", []byte(`{"type":"npn","name":"`+name+`"}`)); err != nil {
+		if _, err = s.CreatePart(ctx, "bc547b", []byte(`{"type":"npn","name":"`+name+`"}`)); err != nil {
 			t.Fatal(err)
 		}
-		if err := s.DeletePart(ctx, "bc547b"); err != nil {
+		if err = s.DeletePart(ctx, "bc547b"); err != nil {
 			t.Fatal(err)
 		}
 	}
 
-	bin, err := s.Binned(ctx)
+	bin, err = s.Binned(ctx)
 	if err != nil {
 		t.Fatal(err)
 	}
@@ -69,7 +67,7 @@ func TestBinned(t *testing.T) {
 	if err != nil || restored.Name != bin.Parts[0].Name {
 		t.Errorf("restored %q, %v; listed was %q", restored.Name, err, bin.Parts[0].Name)
 	}
-	if _, err := s.RestoreBuild(ctx, ids[1]); err != nil {
+	if _, err = s.RestoreBuild(ctx, ids[1]); err != nil {
 		t.Fatal(err)
 	}
 	bin, err = s.Binned(ctx)

@@ -66,12 +66,12 @@ func (s *Store) Build(ctx context.Context, id int64) (b Build, err error) {
 func (s *Store) SaveBuild(ctx context.Context, id, ifRevision int64, document []byte, sum Summary) (b Build, err error) {
 	defer wrap(&err, "save build %d", id)
 	return write(ctx, s, func(ctx context.Context, tx *sql.Tx) (Build, error) {
-		line, err := lineOf(ctx, tx, id, ifRevision)
+		here, err := lineOf(ctx, tx, id, ifRevision)
 		if err != nil {
 			return Build{}, err
 		}
 		return s.addRevision(ctx, tx, id, revision{
-			number: ifRevision + 1, at: s.stamp(), act: "edit", line: line.edited(s.remember),
+			number: ifRevision + 1, at: s.stamp(), act: "edit", line: here.edited(s.remember),
 			document: document, summary: sum,
 		})
 	})

@@ -38,25 +38,15 @@ func TestDocumentsComeBackByteForByte(t *testing.T) {
 			ctx := t.Context()
 			path := filepath.Join(t.TempDir(), "book.db")
 			s, err := store.Open(ctx, path, new(clock).now)
-			if err != nil {
-				t.Fatal(err)
-			}
+			must(t, err)
 			created, err := s.CreateBuild(ctx, []byte(c.document), store.Summary{})
-			if err != nil {
-				t.Fatal(err)
-			}
-			if err := s.Close(); err != nil {
-				t.Fatal(err)
-			}
+			must(t, err)
+			must(t, s.Close())
 			s = openStore(t, path, new(clock).now)
 			loaded, err := s.Build(ctx, created.ID)
-			if err != nil {
-				t.Fatal(err)
-			}
+			must(t, err)
 			revision, err := s.Revision(ctx, created.ID, 1)
-			if err != nil {
-				t.Fatal(err)
-			}
+			must(t, err)
 			for where, got := range map[string][]byte{
 				"CreateBuild": created.Document, "Build": loaded.Document, "Revision": revision,
 			} {
@@ -86,9 +76,7 @@ func TestBuildIsWhatWasSaved(t *testing.T) {
 	want.Revision, want.CanUndo, want.Updated = 2, true, second.Updated
 	want.Document, want.Summary = state(4)
 	loaded, err := s.Build(t.Context(), b.ID)
-	if err != nil {
-		t.Fatal(err)
-	}
+	must(t, err)
 	if diff := cmp.Diff(want, loaded); diff != "" {
 		t.Errorf("Build after SaveBuild (-want +got):\n%s", diff)
 	}
@@ -97,9 +85,7 @@ func TestBuildIsWhatWasSaved(t *testing.T) {
 	}
 	want.Document, want.Summary.Search = nil, ""
 	list, err := s.Builds(t.Context(), "")
-	if err != nil {
-		t.Fatal(err)
-	}
+	must(t, err)
 	if diff := cmp.Diff([]store.Build{want}, list); diff != "" {
 		t.Errorf("Builds (-want +got):\n%s", diff)
 	}
@@ -111,9 +97,7 @@ func TestCopyStartsAfresh(t *testing.T) {
 	document, sum := state(2)
 	document = append(document, ' ')
 	duplicate, err := s.CopyBuild(t.Context(), original.ID, "Second of its kind", document, sum)
-	if err != nil {
-		t.Fatal(err)
-	}
+	must(t, err)
 	sum.Title = "Second of its kind"
 	want := store.Build{
 		ID: duplicate.ID, Revision: 1, Document: document, Summary: sum,
@@ -126,9 +110,7 @@ func TestCopyStartsAfresh(t *testing.T) {
 		t.Error("the copy has the number of the original")
 	}
 	unchanged, err := s.Build(t.Context(), original.ID)
-	if err != nil {
-		t.Fatal(err)
-	}
+	must(t, err)
 	if diff := cmp.Diff(original, unchanged); diff != "" {
 		t.Errorf("the original has changed:\n%s", diff)
 	}
@@ -172,15 +154,10 @@ func TestWhatIsNotThereIsNotFound(t *testing.T) {
 	}
 	s := newStore(t)
 	binned := create(t, s, 1)
-	if err := s.DeleteBuild(t.Context(), binned.ID); err != nil {
-		t.Fatal(err)
-	}
-	if _, err := s.CreatePart(t.Context(), "gone", part); err != nil {
-		t.Fatal(err)
-	}
-	if err := s.DeletePart(t.Context(), "gone"); err != nil {
-		t.Fatal(err)
-	}
+	must(t, s.DeleteBuild(t.Context(), binned.ID))
+	_, err := s.CreatePart(t.Context(), "gone", part)
+	must(t, err)
+	must(t, s.DeletePart(t.Context(), "gone"))
 	for _, c := range cases {
 		t.Run(c.name, func(t *testing.T) {
 			for where, id := range map[string]int64{"never made": binned.ID + 1, "in the bin": binned.ID} {
@@ -232,8 +209,7 @@ func TestOfTwoSavesFromOneRevisionOneWins(t *testing.T) {
 			winner = i
 			continue
 		}
-		var stale *store.Stale
-		if !errors.As(err, &stale) {
+		if stale, ok := errors.AsType[*store.Stale](err); !ok {
 			t.Errorf("saver %d: error = %v, want *Stale", i, err)
 		} else if stale.Have != 2 {
 			t.Errorf("saver %d: Have = %d, want 2", i, stale.Have)
@@ -243,9 +219,7 @@ func TestOfTwoSavesFromOneRevisionOneWins(t *testing.T) {
 		t.Fatal("nobody won")
 	}
 	b, err := s.Build(t.Context(), first.ID)
-	if err != nil {
-		t.Fatal(err)
-	}
+	must(t, err)
 	if want, _ := state(int64(winner + 1)); string(b.Document) != string(want) || b.Revision != 2 {
 		t.Errorf("revision %d holds %s, want revision 2 with %s", b.Revision, b.Document, want)
 	}
@@ -280,9 +254,7 @@ func TestSaversWhoTryAgainLoseNothing(t *testing.T) {
 	found := map[string]bool{}
 	for number := range int64(savers*each + 1) {
 		document, err := s.Revision(t.Context(), first.ID, number+1)
-		if err != nil {
-			t.Fatal(err)
-		}
+		must(t, err)
 		found[string(document)] = true
 	}
 	if len(found) != savers*each+1 {
@@ -300,9 +272,7 @@ func TestClientGoneBeforehandWritesNothing(t *testing.T) {
 		t.Errorf("error = %v, want context.Canceled", err)
 	}
 	loaded, err := s.Build(t.Context(), b.ID)
-	if err != nil {
-		t.Fatal(err)
-	}
+	must(t, err)
 	if diff := cmp.Diff(b, loaded); diff != "" {
 		t.Errorf("the build has changed:\n%s", diff)
 	}
@@ -323,16 +293,12 @@ func TestClientGoneHalfwayHasSaved(t *testing.T) {
 	armed = true
 	document, sum := state(2)
 	saved, err := s.SaveBuild(gone, b.ID, b.Revision, document, sum)
-	if err != nil {
-		t.Fatal(err)
-	}
+	must(t, err)
 	if gone.Err() == nil {
 		t.Fatal("the client never left")
 	}
 	loaded, err := s.Build(t.Context(), b.ID)
-	if err != nil {
-		t.Fatal(err)
-	}
+	must(t, err)
 	if diff := cmp.Diff(saved, loaded); diff != "" || loaded.Revision != 2 {
 		t.Errorf("revision %d is loaded:\n%s", loaded.Revision, diff)
 	}

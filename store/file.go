@@ -97,7 +97,7 @@ func schemaNumber(ctx context.Context, path string) (number int64, err error) {
 }
 
 func exists(path string) bool {
-	_, err := os.Stat(path)
+	_, err := os.Lstat(path)
 	return err == nil
 }
 
@@ -114,7 +114,8 @@ func makeWritable(path string) error {
 	if err != nil {
 		return err
 	}
-	if err := file.Close(); err != nil {
+	err = file.Close()
+	if err != nil {
 		return err
 	}
 	probe, err := os.CreateTemp(folder, filepath.Base(path)+".probe-*")

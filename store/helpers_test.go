@@ -30,18 +30,27 @@ func newStore(tb testing.TB) *store.Store {
 	return openStore(tb, filepath.Join(tb.TempDir(), "book.db"), new(clock).now)
 }
 
+// openStore opens a file for the length of the test.
 func openStore(tb testing.TB, path string, now func() time.Time) *store.Store {
 	tb.Helper()
+	s := openBriefly(tb, path, now)
+	tb.Cleanup(func() { must(tb, s.Close()) })
+	return s
+}
+
+// openBriefly opens a file that the test itself closes.
+func openBriefly(tb testing.TB, path string, now func() time.Time) *store.Store {
+	tb.Helper()
 	s, err := store.Open(context.Background(), path, now)
+	must(tb, err)
+	return s
+}
+
+func must(tb testing.TB, err error) {
+	tb.Helper()
 	if err != nil {
 		tb.Fatal(err)
 	}
-	tb.Cleanup(func() {
-		if err := s.Close(); err != nil {
-			tb.Error(err)
-		}
-	})
-	return s
 }
 
 // state is a document and the summary that belongs to it.

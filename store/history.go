@@ -70,19 +70,19 @@ func (s *Store) Redo(ctx context.Context, id, ifRevision int64) (b Build, err er
 
 func (s *Store) move(ctx context.Context, id, ifRevision int64, act string, by int64) (Build, error) {
 	return write(ctx, s, func(ctx context.Context, tx *sql.Tx) (Build, error) {
-		line, err := lineOf(ctx, tx, id, ifRevision)
+		here, err := lineOf(ctx, tx, id, ifRevision)
 		if err != nil {
 			return Build{}, err
 		}
-		line, ok := line.moved(by, s.remember)
+		there, ok := here.moved(by, s.remember)
 		if !ok {
 			return Build{}, ErrNothing
 		}
-		next := revision{number: ifRevision + 1, at: s.stamp(), act: act, line: line}
+		next := revision{number: ifRevision + 1, at: s.stamp(), act: act, line: there}
 		var tags string
 		err = tx.QueryRowContext(ctx, `
 			SELECT document, title, client, site, tags, search, verdict, card
-			FROM revisions WHERE build = ? AND step = ?`, id, line.at).
+			FROM revisions WHERE build = ? AND step = ?`, id, there.at).
 			Scan(&next.document, &next.summary.Title, &next.summary.Client, &next.summary.Site, &tags,
 				&next.summary.Search, &next.summary.Verdict, &next.summary.Card)
 		if err != nil {
@@ -113,26 +113,19 @@ func (s *Store) Revision(ctx context.Context, id, number int64) (document []byte
 // revisions are in it, every kept one, and those that undo and redo can reach.
 func (s *Store) Revisions(ctx context.Context, id int64) (history []RevisionInfo, err error) {
 	defer wrap(&err, "list revisions of build %d", id)
-	rows, err := s.reader.QueryContext(ctx, `
+	err = s.each(ctx, `
 		SELECT r.number, r.at, r.act, r.kept, r.note, r.title, r.verdict
 		FROM revisions AS r JOIN builds AS b ON b.id = r.build
 		WHERE r.build = ? AND b.deleted_at IS NULL
-		ORDER BY r.number DESC`, id)
-	if err != nil {
-		return nil, err
-	}
-	defer func() { _ = rows.Close() }() // rows.Err tells
-	for rows.Next() {
+		ORDER BY r.number DESC`, func(rows *sql.Rows) error {
 		var entry RevisionInfo
 		var at int64
-		err := rows.Scan(&entry.Number, &at, &entry.Act, &entry.Kept, &entry.Note, &entry.Title, &entry.Verdict)
-		if err != nil {
-			return nil, err
-		}
+		failed := rows.Scan(&entry.Number, &at, &entry.Act, &entry.Kept, &entry.Note, &entry.Title, &entry.Verdict)
 		entry.At = moment(at)
 		history = append(history, entry)
-	}
-	if err := rows.Err(); err != nil {
+		return failed
+	}, id)
+	if err != nil {
 		return nil, err
 	}
 	if len(history) == 0 {
@@ -195,7 +188,8 @@ func (s *Store) addRevision(ctx context.Context, tx *sql.Tx, id int64, r revisio
 	if err != nil {
 		return Build{}, err
 	}
-	if err := s.insertRevision(ctx, tx, id, r); err != nil {
+	err = insertRevision(ctx, tx, id, r)
+	if err != nil {
 		return Build{}, err
 	}
 	_, err = tx.ExecContext(ctx, `
@@ -208,7 +202,7 @@ func (s *Store) addRevision(ctx context.Context, tx *sql.Tx, id int64, r revisio
 }
 
 // insertRevision writes the row, and what the shelf needs of it to the build.
-func (s *Store) insertRevision(ctx context.Context, tx *sql.Tx, id int64, r revision) error {
+func insertRevision(ctx context.Context, tx *sql.Tx, id int64, r revision) error {
 	tags, err := tagsText(r.summary.Tags)
 	if err != nil {
 		return err

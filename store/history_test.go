@@ -45,14 +45,12 @@ func TestUndoAndRedo(t *testing.T) {
 			s := newStore(t)
 			b := create(t, s, 0)
 			var err error
-			for _, act := range strings.Fields(c.acts) {
+			for act := range strings.FieldsSeq(c.acts) {
 				b, err = perform(t, s, b, act)
 			}
 			got := "nothing"
 			if !errors.Is(err, store.ErrNothing) {
-				if err != nil {
-					t.Fatal(err)
-				}
+				must(t, err)
 				got = strings.TrimPrefix(b.Summary.Title, "state ")
 			}
 			if got != c.want || b.CanUndo != c.undo || b.CanRedo != c.redo {
@@ -103,9 +101,7 @@ func TestUndoIsASaveThatOthersSee(t *testing.T) {
 	s := newStore(t)
 	b := save(t, s, create(t, s, 1), 2)
 	undone, err := s.Undo(t.Context(), b.ID, b.Revision)
-	if err != nil {
-		t.Fatal(err)
-	}
+	must(t, err)
 	document, sum := state(3)
 	_, err = s.SaveBuild(t.Context(), b.ID, b.Revision, document, sum)
 	var stale *store.Stale
@@ -113,17 +109,15 @@ func TestUndoIsASaveThatOthersSee(t *testing.T) {
 		t.Errorf("save from before the undo: error = %v, want *Stale with %d", err, undone.Revision)
 	}
 	for name, move := range map[string]func() error{
-		"Undo": func() error { _, err := s.Undo(t.Context(), b.ID, b.Revision); return err },
-		"Redo": func() error { _, err := s.Redo(t.Context(), b.ID, b.Revision); return err },
+		"Undo": func() error { _, moved := s.Undo(t.Context(), b.ID, b.Revision); return moved },
+		"Redo": func() error { _, moved := s.Redo(t.Context(), b.ID, b.Revision); return moved },
 	} {
-		if err := move(); !errors.As(err, &stale) || stale.Have != undone.Revision {
+		if err = move(); !errors.As(err, &stale) || stale.Have != undone.Revision {
 			t.Errorf("%s from before the undo: error = %v, want *Stale with %d", name, err, undone.Revision)
 		}
 	}
 	found, err := s.Builds(t.Context(), "led1")
-	if err != nil {
-		t.Fatal(err)
-	}
+	must(t, err)
 	if len(found) != 1 {
 		t.Errorf("search for the words of the state gone back to finds %d builds, want 1", len(found))
 	}
@@ -134,18 +128,12 @@ func TestHistoryIsListedNewestFirst(t *testing.T) {
 	b := save(t, s, create(t, s, 1), 2)
 	for _, act := range []string{"u", "r", "3"} {
 		next, err := perform(t, s, b, act)
-		if err != nil {
-			t.Fatal(err)
-		}
+		must(t, err)
 		b = next
 	}
-	if err := s.KeepRevision(t.Context(), b.ID, 2, true, "as hung up"); err != nil {
-		t.Fatal(err)
-	}
+	must(t, s.KeepRevision(t.Context(), b.ID, 2, true, "as hung up"))
 	got, err := s.Revisions(t.Context(), b.ID)
-	if err != nil {
-		t.Fatal(err)
-	}
+	must(t, err)
 	want := []store.RevisionInfo{
 		{Number: 5, Act: "edit", Title: "state 3", Verdict: "fail"},
 		{Number: 4, Act: "redo", Title: "state 2", Verdict: "unknown"},
@@ -172,9 +160,7 @@ func TestTheLastHundredRevisionsStay(t *testing.T) {
 	checkRevisions(t, s, b.ID, 51, 150)
 	for range 99 {
 		next, err := s.Undo(t.Context(), b.ID, b.Revision)
-		if err != nil {
-			t.Fatal(err)
-		}
+		must(t, err)
 		b = next
 	}
 	if b.CanUndo || b.Summary.Title != "state 51" {
@@ -182,9 +168,7 @@ func TestTheLastHundredRevisionsStay(t *testing.T) {
 	}
 	for range 99 {
 		next, err := s.Redo(t.Context(), b.ID, b.Revision)
-		if err != nil {
-			t.Fatal(err)
-		}
+		must(t, err)
 		b = next
 	}
 	if b.CanRedo || b.Summary.Title != "state 150" {
@@ -196,20 +180,16 @@ func TestPruningSparesWhatUndoCanReach(t *testing.T) {
 	s := newStore(t)
 	s.Remember(4)
 	b := create(t, s, 1)
-	for _, act := range strings.Fields("2 3 4 u r u r u r u r") { // the undo line is 1 2 3 4 all along
+	for act := range strings.FieldsSeq("2 3 4 u r u r u r u r") { // the undo line is 1 2 3 4 all along
 		next, err := perform(t, s, b, act)
-		if err != nil {
-			t.Fatal(err)
-		}
+		must(t, err)
 		b = next
 	}
 	// The last four, and revisions 1 and 2, which hold the states 1 and 2.
 	checkRevisions(t, s, b.ID, 1, 2, 9, 12)
 	for _, want := range []string{"state 3", "state 2", "state 1"} {
 		next, err := s.Undo(t.Context(), b.ID, b.Revision)
-		if err != nil {
-			t.Fatal(err)
-		}
+		must(t, err)
 		if b = next; b.Summary.Title != want {
 			t.Errorf("undo gives %s, want %s", b.Summary.Title, want)
 		}
@@ -220,9 +200,7 @@ func TestKeptRevisionsStayUntilLetGo(t *testing.T) {
 	s := newStore(t)
 	s.Remember(3)
 	b := create(t, s, 1)
-	if err := s.KeepRevision(t.Context(), b.ID, 1, true, "as quoted"); err != nil {
-		t.Fatal(err)
-	}
+	must(t, s.KeepRevision(t.Context(), b.ID, 1, true, "as quoted"))
 	for n := int64(2); n <= 9; n++ {
 		b = save(t, s, b, n)
 	}
@@ -231,9 +209,7 @@ func TestKeptRevisionsStayUntilLetGo(t *testing.T) {
 	if got, err := s.Revision(t.Context(), b.ID, 1); err != nil || string(got) != string(want) {
 		t.Errorf("kept revision = %s, %v, want %s", got, err, want)
 	}
-	if err := s.KeepRevision(t.Context(), b.ID, 1, false, "a note that goes with the mark"); err != nil {
-		t.Fatal(err)
-	}
+	must(t, s.KeepRevision(t.Context(), b.ID, 1, false, "a note that goes with the mark"))
 	b = save(t, s, b, 10)
 	checkRevisions(t, s, b.ID, 8, 10)
 	if err := s.KeepRevision(t.Context(), b.ID, 1, true, ""); !errors.Is(err, store.ErrNotFound) {
@@ -245,9 +221,7 @@ func TestKeptRevisionsStayUntilLetGo(t *testing.T) {
 func checkRevisions(t *testing.T, s *store.Store, id int64, pairs ...int64) {
 	t.Helper()
 	history, err := s.Revisions(t.Context(), id)
-	if err != nil {
-		t.Fatal(err)
-	}
+	must(t, err)
 	var got, want []int64
 	for _, entry := range history {
 		got = append(got, entry.Number)

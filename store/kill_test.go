@@ -44,13 +44,10 @@ func TestWriterChild(t *testing.T) {
 	}
 	s := openStore(t, path, time.Now)
 	acknowledge := func(b store.Build, err error) store.Build {
-		if err != nil {
-			t.Fatal(err)
-		}
+		must(t, err)
 		n := strings.TrimPrefix(b.Summary.Title, "state ")
-		if _, err := fmt.Fprintln(os.Stdout, b.ID, b.Revision, n); err != nil {
-			t.Fatal(err)
-		}
+		_, err = fmt.Fprintln(os.Stdout, b.ID, b.Revision, n)
+		must(t, err)
 		return b
 	}
 	ctx := context.Background()
@@ -82,13 +79,9 @@ func killed(t *testing.T, child, variable, value string) string {
 	command.Env = append(os.Environ(), variable+"="+value)
 	var stdout, stderr bytes.Buffer
 	command.Stdout, command.Stderr = &stdout, &stderr
-	if err := command.Start(); err != nil {
-		t.Fatal(err)
-	}
+	must(t, command.Start())
 	time.Sleep(20*time.Millisecond + rand.N(180*time.Millisecond))
-	if err := command.Process.Kill(); err != nil {
-		t.Fatal(err)
-	}
+	must(t, command.Process.Kill())
 	_ = command.Wait() // an error, since it was killed
 	status, ok := command.ProcessState.Sys().(syscall.WaitStatus)
 	if !ok || status.Signal() != syscall.SIGKILL {
@@ -135,10 +128,7 @@ func TestKilledWriterLosesNothing(t *testing.T) {
 // checkSaved opens the file and wants every revision in it, to the byte.
 func checkSaved(t *testing.T, path string, acknowledged []saved) {
 	t.Helper()
-	s, err := store.Open(t.Context(), path, time.Now)
-	if err != nil {
-		t.Fatal(err)
-	}
+	s := openBriefly(t, path, time.Now)
 	sound(t, s)
 	for _, a := range acknowledged {
 		got, err := s.Revision(t.Context(), a.build, a.revision)
@@ -148,9 +138,7 @@ func checkSaved(t *testing.T, path string, acknowledged []saved) {
 			t.Errorf("revision %d of build %d = %.60s, want state %d", a.revision, a.build, got, a.state)
 		}
 	}
-	if err := s.Close(); err != nil {
-		t.Fatal(err)
-	}
+	must(t, s.Close())
 }
 
 // TestMakerChild makes one new file after the other.
@@ -160,13 +148,8 @@ func TestMakerChild(t *testing.T) {
 		t.Skip("runs as a child of TestKilledFirstStartIsFinished")
 	}
 	for n := 0; ; n++ {
-		s, err := store.Open(t.Context(), filepath.Join(folder, fmt.Sprintf("%04d.db", n)), time.Now)
-		if err != nil {
-			t.Fatal(err)
-		}
-		if err := s.Close(); err != nil {
-			t.Fatal(err)
-		}
+		s := openBriefly(t, filepath.Join(folder, fmt.Sprintf("%04d.db", n)), time.Now)
+		must(t, s.Close())
 	}
 }
 
@@ -186,9 +169,7 @@ func TestKilledFirstStartIsFinished(t *testing.T) {
 			made++
 			sound(t, s)
 			create(t, s, 1)
-			if err := s.Close(); err != nil {
-				t.Fatal(err)
-			}
+			must(t, s.Close())
 		}
 	}
 	if made == 0 {

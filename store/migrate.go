@@ -7,7 +7,6 @@ import (
 	"errors"
 	"fmt"
 	"io/fs"
-	"os"
 	"slices"
 
 	"github.com/pressly/goose/v3"
@@ -64,7 +63,8 @@ func migrate(ctx context.Context, path string, have int64, known []int64, migrat
 	if have == 0 {
 		// The mark is the first thing ever written, so that a start cut short
 		// leaves either an empty file or one that we know again.
-		if _, err := db.ExecContext(ctx, fmt.Sprintf("PRAGMA application_id = %d", applicationID)); err != nil {
+		_, err = db.ExecContext(ctx, fmt.Sprintf("PRAGMA application_id = %d", applicationID))
+		if err != nil {
 			return err
 		}
 		return up(ctx, db, migrations)
@@ -73,7 +73,8 @@ func migrate(ctx context.Context, path string, have int64, known []int64, migrat
 	if err != nil {
 		return err
 	}
-	if err := up(ctx, db, migrations); err != nil {
+	err = up(ctx, db, migrations)
+	if err != nil {
 		return errors.Join(err, putBack(context.WithoutCancel(ctx), db, copied))
 	}
 	return nil
@@ -128,9 +129,6 @@ func copyBefore(ctx context.Context, db *sql.DB, path string, migration int64) (
 
 // putBack overwrites the open file with the copy made of it.
 func putBack(ctx context.Context, db *sql.DB, copied string) (err error) {
-	if _, err := os.Stat(copied); err != nil {
-		return err
-	}
 	source, err := sql.Open("sqlite3", dsn(copied, "mode", "ro", "immutable", "1"))
 	if err != nil {
 		return err

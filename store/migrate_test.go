@@ -29,14 +29,10 @@ func withMigrations(t *testing.T, further map[string]string) fs.FS {
 	t.Helper()
 	all := fstest.MapFS{}
 	names, err := fs.Glob(store.Migrations, "migrations/*.sql")
-	if err != nil {
-		t.Fatal(err)
-	}
+	must(t, err)
 	for _, name := range names {
 		content, err := fs.ReadFile(store.Migrations, name)
-		if err != nil {
-			t.Fatal(err)
-		}
+		must(t, err)
 		all[filepath.Base(name)] = &fstest.MapFile{Data: content}
 	}
 	for name, content := range further {
@@ -57,31 +53,22 @@ func everything(t *testing.T, s *store.Store) shelf {
 	t.Helper()
 	all := shelf{Revisions: map[int64][]store.RevisionInfo{}, Documents: map[string]string{}}
 	list, err := s.Builds(t.Context(), "")
-	if err != nil {
-		t.Fatal(err)
-	}
+	must(t, err)
 	for _, entry := range list {
-		b, err := s.Build(t.Context(), entry.ID)
-		if err != nil {
-			t.Fatal(err)
-		}
+		b, failed := s.Build(t.Context(), entry.ID)
+		must(t, failed)
 		all.Builds = append(all.Builds, b)
-		all.Revisions[b.ID], err = s.Revisions(t.Context(), b.ID)
-		if err != nil {
-			t.Fatal(err)
-		}
+		all.Revisions[b.ID], failed = s.Revisions(t.Context(), b.ID)
+		must(t, failed)
 		for _, revision := range all.Revisions[b.ID] {
-			document, err := s.Revision(t.Context(), b.ID, revision.Number)
-			if err != nil {
-				t.Fatal(err)
-			}
+			var document []byte
+			document, failed = s.Revision(t.Context(), b.ID, revision.Number)
+			must(t, failed)
 			all.Documents[fmt.Sprintf("%d/%d", b.ID, revision.Number)] = string(document)
 		}
 	}
 	all.Parts, err = s.Parts(t.Context(), "")
-	if err != nil {
-		t.Fatal(err)
-	}
+	must(t, err)
 	return all
 }
 
@@ -89,9 +76,7 @@ func TestFileOfSchemaOneOpens(t *testing.T) {
 	s := openStore(t, schemaOne(t), new(clock).now)
 	sound(t, s)
 	b, err := s.Build(t.Context(), 1)
-	if err != nil {
-		t.Fatal(err)
-	}
+	must(t, err)
 	want := "{\"title\": \"Tide-table case\",\n \"x\": 1.70}"
 	if string(b.Document) != want || b.Revision != 7 || !b.CanUndo || !b.CanRedo {
 		t.Errorf("build 1 = revision %d, CanUndo %v, CanRedo %v, %s, want 7, true, true, %s",
@@ -102,9 +87,7 @@ func TestFileOfSchemaOneOpens(t *testing.T) {
 		want string
 	}{{s.Undo, "1.60"}, {s.Undo, "1.50"}, {s.Redo, "1.60"}, {s.Redo, "1.70"}, {s.Redo, "1.80"}} {
 		b, err = step.move(t.Context(), 1, b.Revision)
-		if err != nil {
-			t.Fatal(err)
-		}
+		must(t, err)
 		if !strings.Contains(string(b.Document), step.want) {
 			t.Errorf("document = %s, want the one with %s", b.Document, step.want)
 		}
@@ -135,21 +118,15 @@ func TestOldFilesGetTheSchemaOfNewOnes(t *testing.T) {
 func schema(t *testing.T, db *sql.DB) map[string]string {
 	t.Helper()
 	rows, err := db.QueryContext(t.Context(), `SELECT type || ' ' || name, coalesce(sql, '') FROM sqlite_schema`)
-	if err != nil {
-		t.Fatal(err)
-	}
-	defer rows.Close()
+	must(t, err)
+	defer func() { _ = rows.Close() }() // rows.Err tells
 	all := map[string]string{}
 	for rows.Next() {
 		var name, text string
-		if err := rows.Scan(&name, &text); err != nil {
-			t.Fatal(err)
-		}
+		must(t, rows.Scan(&name, &text))
 		all[name] = strings.Join(strings.Fields(text), " ")
 	}
-	if err := rows.Err(); err != nil {
-		t.Fatal(err)
-	}
+	must(t, rows.Err())
 	return all
 }
 
@@ -170,19 +147,12 @@ ALTER TABLE builds_new RENAME TO builds;
 
 func TestRebuildingAParentTableLosesNoRevision(t *testing.T) {
 	path := schemaOne(t)
-	old, err := store.Open(t.Context(), path, new(clock).now)
-	if err != nil {
-		t.Fatal(err)
-	}
+	old := openBriefly(t, path, new(clock).now)
 	want := everything(t, old)
-	if err := old.Close(); err != nil {
-		t.Fatal(err)
-	}
+	must(t, old.Close())
 	migrations := withMigrations(t, map[string]string{"0002_colours.sql": rebuildBuilds})
 	s, err := store.OpenWith(t.Context(), path, new(clock).now, migrations)
-	if err != nil {
-		t.Fatal(err)
-	}
+	must(t, err)
 	if diff := cmp.Diff(want, everything(t, s)); diff != "" {
 		t.Errorf("after the migration (-before +after):\n%s", diff)
 	}
@@ -191,9 +161,7 @@ func TestRebuildingAParentTableLosesNoRevision(t *testing.T) {
 	if err := s.Reader().QueryRowContext(t.Context(), `SELECT colour FROM builds WHERE id = 1`).Scan(&colour); err != nil || colour != "amber" {
 		t.Errorf("colour = %q, %v: the migration did not run", colour, err)
 	}
-	if err := s.Close(); err != nil {
-		t.Fatal(err)
-	}
+	must(t, s.Close())
 	if diff := cmp.Diff([]string{"book.db", "book.db.before-0002"}, files(t, filepath.Dir(path))); diff != "" {
 		t.Errorf("files (-want +got):\n%s", diff)
 	}
@@ -211,12 +179,8 @@ func TestMigratedFileIsNotCopiedAgain(t *testing.T) {
 	migrations := withMigrations(t, map[string]string{"0002_colours.sql": rebuildBuilds})
 	for range 2 {
 		s, err := store.OpenWith(t.Context(), path, new(clock).now, migrations)
-		if err != nil {
-			t.Fatal(err)
-		}
-		if err := s.Close(); err != nil {
-			t.Fatal(err)
-		}
+		must(t, err)
+		must(t, s.Close())
 	}
 	if diff := cmp.Diff([]string{"book.db", "book.db.before-0002"}, files(t, filepath.Dir(path))); diff != "" {
 		t.Errorf("files (-want +got):\n%s", diff)
@@ -282,8 +246,6 @@ func TestNothingIsMigratedUnderAnotherProgram(t *testing.T) {
 		t.Errorf("the file has changed:\n%s", diff)
 	}
 	b, err := old.Build(t.Context(), 1)
-	if err != nil {
-		t.Fatal(err)
-	}
+	must(t, err)
 	save(t, old, b, 5)
 }

@@ -25,9 +25,7 @@ func TestOpenMakesFolderAndFileForTheirOwnerAlone(t *testing.T) {
 	}
 	for name, want := range map[string]fs.FileMode{folder: fs.ModeDir | 0o700, path: 0o600} {
 		info, err := os.Stat(name)
-		if err != nil {
-			t.Fatal(err)
-		}
+		must(t, err)
 		if info.Mode() != want {
 			t.Errorf("%s has mode %v, want %v", name, info.Mode(), want)
 		}
@@ -36,17 +34,11 @@ func TestOpenMakesFolderAndFileForTheirOwnerAlone(t *testing.T) {
 
 func TestCloseLeavesOneFile(t *testing.T) {
 	folder := t.TempDir()
-	s, err := store.Open(t.Context(), filepath.Join(folder, "book.db"), new(clock).now)
-	if err != nil {
-		t.Fatal(err)
-	}
+	s := openBriefly(t, filepath.Join(folder, "book.db"), new(clock).now)
 	b := create(t, s, 1)
-	if _, err := s.Build(t.Context(), b.ID); err != nil {
-		t.Fatal(err)
-	}
-	if err := s.Close(); err != nil {
-		t.Fatal(err)
-	}
+	_, err := s.Build(t.Context(), b.ID)
+	must(t, err)
+	must(t, s.Close())
 	if diff := cmp.Diff([]string{"book.db"}, files(t, folder)); diff != "" {
 		t.Errorf("files (-want +got):\n%s", diff)
 	}
@@ -115,9 +107,7 @@ func TestEveryConnectionIsSetUp(t *testing.T) {
 func hold(t *testing.T, db *sql.DB) *sql.Conn {
 	t.Helper()
 	conn, err := db.Conn(t.Context())
-	if err != nil {
-		t.Fatal(err)
-	}
+	must(t, err)
 	t.Cleanup(func() {
 		if err := conn.Close(); err != nil {
 			t.Error(err)
@@ -138,17 +128,13 @@ func TestWriterTakesItsLockAtOnce(t *testing.T) {
 	path := filepath.Join(t.TempDir(), "book.db")
 	s := openStore(t, path, new(clock).now)
 	tx, err := s.Writer().BeginTx(t.Context(), nil)
-	if err != nil {
-		t.Fatal(err)
-	}
+	must(t, err)
 	other := plain(t, path+"?_txlock=immediate&_busy_timeout=0")
 	if second, err := other.BeginTx(t.Context(), nil); err == nil {
 		t.Error("a second writer got in beside a transaction that has not written yet")
 		_ = second.Rollback()
 	}
-	if err := tx.Rollback(); err != nil {
-		t.Fatal(err)
-	}
+	must(t, tx.Rollback())
 }
 
 func TestTwoProgramsShareAFile(t *testing.T) {
@@ -164,9 +150,7 @@ func TestTwoProgramsShareAFile(t *testing.T) {
 func plain(t *testing.T, name string) *sql.DB {
 	t.Helper()
 	db, err := sql.Open("sqlite3", "file:"+name)
-	if err != nil {
-		t.Fatal(err)
-	}
+	must(t, err)
 	t.Cleanup(func() {
 		if err := db.Close(); err != nil {
 			t.Error(err)
@@ -179,30 +163,21 @@ func plain(t *testing.T, name string) *sql.DB {
 func execute(t *testing.T, path string, statements ...string) {
 	t.Helper()
 	db, err := sql.Open("sqlite3", "file:"+path)
-	if err != nil {
-		t.Fatal(err)
-	}
+	must(t, err)
 	for _, statement := range statements {
 		if _, err := db.ExecContext(t.Context(), statement); err != nil {
 			t.Fatalf("%.100s: %v", statement, err)
 		}
 	}
-	if err := db.Close(); err != nil {
-		t.Fatal(err)
-	}
+	must(t, db.Close())
 }
 
 // made makes a file with one build in it, and closes it.
 func made(t *testing.T, path string) {
 	t.Helper()
-	s, err := store.Open(t.Context(), path, new(clock).now)
-	if err != nil {
-		t.Fatal(err)
-	}
+	s := openBriefly(t, path, new(clock).now)
 	create(t, s, 1)
-	if err := s.Close(); err != nil {
-		t.Fatal(err)
-	}
+	must(t, s.Close())
 }
 
 type refusedCase struct {
@@ -214,30 +189,39 @@ type refusedCase struct {
 func TestFilesThatAreNotForUsStayUntouched(t *testing.T) {
 	const newer = `INSERT INTO goose_db_version (version_id, is_applied) VALUES (9, 1)`
 	cases := []refusedCase{
-		{"a text", func(t *testing.T, path string) { write(t, path, bytes.Repeat([]byte("Not a database.\n"), 500)) }, store.ErrNotOurs},
-		{"a text of one line", func(t *testing.T, path string) { write(t, path, []byte("short\n")) }, store.ErrNotOurs},
+		{"a text", func(t *testing.T, path string) {
+			t.Helper()
+			write(t, path, bytes.Repeat([]byte("Not a database.\n"), 500))
+		}, store.ErrNotOurs},
+		{"a text of one line", func(t *testing.T, path string) {
+			t.Helper()
+			write(t, path, []byte("short\n"))
+		}, store.ErrNotOurs},
 		{"a SQLite file without a mark", func(t *testing.T, path string) {
+			t.Helper()
 			execute(t, path, `CREATE TABLE builds (id INTEGER)`)
 		}, store.ErrNotOurs},
 		{"a SQLite file of another program", func(t *testing.T, path string) {
+			t.Helper()
 			execute(t, path, `PRAGMA application_id = 252006675`, `CREATE TABLE builds (id INTEGER)`)
 		}, store.ErrNotOurs},
 		{"a foreign file that somebody has open", func(t *testing.T, path string) {
+			t.Helper()
 			db := plain(t, path+"?_journal_mode=WAL")
-			if _, err := db.ExecContext(t.Context(), `CREATE TABLE builds (id INTEGER)`); err != nil {
-				t.Fatal(err)
-			}
+			_, err := db.ExecContext(t.Context(), `CREATE TABLE builds (id INTEGER)`)
+			must(t, err)
 		}, store.ErrNotOurs},
 		{"a folder", func(t *testing.T, path string) {
-			if err := os.Mkdir(path, 0o700); err != nil {
-				t.Fatal(err)
-			}
+			t.Helper()
+			must(t, os.Mkdir(path, 0o700))
 		}, store.ErrNotOurs},
 		{"a file from a newer version", func(t *testing.T, path string) {
+			t.Helper()
 			made(t, path)
 			execute(t, path, newer)
 		}, store.ErrNewer},
 		{"a file that a newer version left behind when it was killed", func(t *testing.T, path string) {
+			t.Helper()
 			original := filepath.Join(t.TempDir(), "book.db")
 			made(t, original)
 			db := plain(t, original)
@@ -313,9 +297,16 @@ func TestFolderThatCannotBeMade(t *testing.T) {
 
 func TestStartsCutShortAreFinished(t *testing.T) {
 	for name, leave := range map[string]func(*testing.T, string){
-		"an empty file": func(t *testing.T, path string) { write(t, path, nil) },
-		"only the mark": func(t *testing.T, path string) { execute(t, path, `PRAGMA application_id = 1282307170`) },
+		"an empty file": func(t *testing.T, path string) {
+			t.Helper()
+			write(t, path, nil)
+		},
+		"only the mark": func(t *testing.T, path string) {
+			t.Helper()
+			execute(t, path, `PRAGMA application_id = 1282307170`)
+		},
 		"no tables of ours": func(t *testing.T, path string) {
+			t.Helper()
 			execute(t, path, `PRAGMA application_id = 1282307170`, `
 				CREATE TABLE goose_db_version (id INTEGER PRIMARY KEY AUTOINCREMENT, version_id INTEGER NOT NULL,
 					is_applied INTEGER NOT NULL, tstamp TIMESTAMP DEFAULT (datetime('now')))`,
@@ -347,9 +338,7 @@ func TestOpenStopsWhenTold(t *testing.T) {
 
 func write(t *testing.T, path string, content []byte) {
 	t.Helper()
-	if err := os.WriteFile(path, content, 0o600); err != nil {
-		t.Fatal(err)
-	}
+	must(t, os.WriteFile(path, content, 0o600))
 }
 
 // content is every file of a folder with its bytes.
@@ -358,9 +347,7 @@ func content(t *testing.T, folder string) map[string]string {
 	all := map[string]string{}
 	for _, name := range files(t, folder) {
 		info, err := os.Stat(filepath.Join(folder, name))
-		if err != nil {
-			t.Fatal(err)
-		}
+		must(t, err)
 		if info.IsDir() {
 			all[name] = "folder"
 			continue

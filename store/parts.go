@@ -24,23 +24,19 @@ type Part struct {
 // then name, then key.
 func (s *Store) Parts(ctx context.Context, typ string) (parts []Part, err error) {
 	defer wrap(&err, "list parts")
-	rows, err := s.reader.QueryContext(ctx, `
+	err = s.each(ctx, `
 		SELECT key, type, name, document, updated
 		FROM parts
 		WHERE deleted_at IS NULL AND (type = :type OR :type = '')
-		ORDER BY type, name COLLATE NOCASE, key`, sql.Named("type", typ))
+		ORDER BY type, name COLLATE NOCASE, key`, func(rows *sql.Rows) error {
+		p, failed := scanPart(rows.Scan)
+		parts = append(parts, p)
+		return failed
+	}, sql.Named("type", typ))
 	if err != nil {
 		return nil, err
 	}
-	defer func() { _ = rows.Close() }() // rows.Err tells
-	for rows.Next() {
-		p, err := scanPart(rows.Scan)
-		if err != nil {
-			return nil, err
-		}
-		parts = append(parts, p)
-	}
-	return parts, rows.Err()
+	return parts, nil
 }
 
 // Part returns the part of that key, or ErrNotFound.

@@ -13,26 +13,20 @@ func TestPartsAreKeptByKey(t *testing.T) {
 	s := newStore(t)
 	document := "{ \"type\": \"npn\",\r\n \"name\": \"BC547B\", \"hfe\": 2.00e2, \"extra\": 123456789012345678901234567890 }"
 	created, err := s.CreatePart(t.Context(), "bc547b", []byte(document))
-	if err != nil {
-		t.Fatal(err)
-	}
+	must(t, err)
 	want := store.Part{Key: "bc547b", Type: "npn", Name: "BC547B", Document: []byte(document), Updated: created.Updated}
 	if diff := cmp.Diff(want, created); diff != "" {
 		t.Errorf("CreatePart (-want +got):\n%s", diff)
 	}
 	want.Type, want.Name, want.Document = "pnp", "", []byte(`{"type":"pnp"}`)
 	saved, err := s.SavePart(t.Context(), "bc547b", want.Document)
-	if err != nil {
-		t.Fatal(err)
-	}
+	must(t, err)
 	if !saved.Updated.After(created.Updated) {
 		t.Errorf("Updated = %v, want later than %v", saved.Updated, created.Updated)
 	}
 	want.Updated = saved.Updated
 	loaded, err := s.Part(t.Context(), "bc547b")
-	if err != nil {
-		t.Fatal(err)
-	}
+	must(t, err)
 	if diff := cmp.Diff(want, loaded); diff != "" {
 		t.Errorf("Part after SavePart (-want +got):\n%s", diff)
 	}
@@ -48,22 +42,17 @@ func TestPartsAreListedByTypeAndName(t *testing.T) {
 		"d3": `{"type":"led","name":"White"}`,
 		"d4": `{"type":"led"}`,
 	} {
-		if _, err := s.CreatePart(t.Context(), key, []byte(document)); err != nil {
-			t.Fatal(err)
-		}
+		_, err := s.CreatePart(t.Context(), key, []byte(document))
+		must(t, err)
 	}
-	if err := s.DeletePart(t.Context(), "d3"); err != nil {
-		t.Fatal(err)
-	}
+	must(t, s.DeletePart(t.Context(), "d3"))
 	for typ, want := range map[string][]string{
 		"":       {"d4", "d1", "d2", "q2", "q1"},
 		"npn":    {"q2", "q1"},
 		"module": nil,
 	} {
 		parts, err := s.Parts(t.Context(), typ)
-		if err != nil {
-			t.Fatal(err)
-		}
+		must(t, err)
 		var got []string
 		for _, p := range parts {
 			got = append(got, p.Key)
@@ -80,22 +69,17 @@ func TestPartsAreListedByTypeAndName(t *testing.T) {
 func TestAKeyIsTakenOnlyByWhatLiesInTheDrawer(t *testing.T) {
 	s := newStore(t)
 	first, second := []byte(`{"type":"led","name":"first"}`), []byte(`{"type":"led","name":"second"}`)
-	if _, err := s.CreatePart(t.Context(), "white", first); err != nil {
-		t.Fatal(err)
-	}
-	_, err := s.CreatePart(t.Context(), "white", second)
+	_, err := s.CreatePart(t.Context(), "white", first)
+	must(t, err)
+	_, err = s.CreatePart(t.Context(), "white", second)
 	taken(t, "CreatePart", err)
-	if err := s.DeletePart(t.Context(), "white"); err != nil {
-		t.Fatal(err)
-	}
-	if _, err := s.CreatePart(t.Context(), "white", second); err != nil {
+	must(t, s.DeletePart(t.Context(), "white"))
+	if _, err = s.CreatePart(t.Context(), "white", second); err != nil {
 		t.Errorf("CreatePart with the key of a part in the bin: %v", err)
 	}
 	_, err = s.RestorePart(t.Context(), "white")
 	taken(t, "RestorePart", err)
-	if err := s.DeletePart(t.Context(), "white"); err != nil {
-		t.Fatal(err)
-	}
+	must(t, s.DeletePart(t.Context(), "white"))
 	for range 2 { // the second time it is there already
 		p, err := s.RestorePart(t.Context(), "white")
 		if err == nil {
@@ -113,8 +97,7 @@ func TestAKeyIsTakenOnlyByWhatLiesInTheDrawer(t *testing.T) {
 
 func taken(t *testing.T, call string, err error) {
 	t.Helper()
-	var taken *store.KeyTaken
-	if !errors.As(err, &taken) {
+	if taken, ok := errors.AsType[*store.KeyTaken](err); !ok {
 		t.Errorf("%s: error = %v, want *KeyTaken", call, err)
 	} else if taken.Key != "white" {
 		t.Errorf("%s: Key = %q, want white", call, taken.Key)

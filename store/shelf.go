@@ -2,7 +2,9 @@ package store
 
 import (
 	"context"
+	"database/sql"
 	"encoding/json"
+	"fmt"
 	"slices"
 	"strings"
 	"unicode"
@@ -34,32 +36,30 @@ func (s *Store) Builds(ctx context.Context, query string) (builds []Build, err e
 		}
 		patterns = append(patterns, "%"+escape.Replace(word)+"%")
 	}
-	rows, err := s.reader.QueryContext(ctx, `
+	// Only the number of conditions comes from the query, never its text.
+	conditions := strings.Repeat(` AND folded LIKE ? ESCAPE '\'`, len(patterns))
+	err = s.each(ctx, fmt.Sprintf(`
 		SELECT id, revision, created, updated, step > first_step, step < last_step,
 			title, client, site, tags, verdict, card
 		FROM builds
-		WHERE deleted_at IS NULL`+strings.Repeat(` AND folded LIKE ? ESCAPE '\'`, len(patterns))+`
-		ORDER BY updated DESC, id DESC`, patterns...)
-	if err != nil {
-		return nil, err
-	}
-	defer func() { _ = rows.Close() }() // rows.Err tells
-	for rows.Next() {
+		WHERE deleted_at IS NULL%s
+		ORDER BY updated DESC, id DESC`, conditions), func(rows *sql.Rows) error {
 		var b Build
 		var created, updated int64
 		var tags string
-		err := rows.Scan(&b.ID, &b.Revision, &created, &updated, &b.CanUndo, &b.CanRedo,
+		failed := rows.Scan(&b.ID, &b.Revision, &created, &updated, &b.CanUndo, &b.CanRedo,
 			&b.Summary.Title, &b.Summary.Client, &b.Summary.Site, &tags, &b.Summary.Verdict, &b.Summary.Card)
-		if err != nil {
-			return nil, err
-		}
-		if err := json.Unmarshal([]byte(tags), &b.Summary.Tags); err != nil {
-			return nil, err
+		if failed != nil {
+			return failed
 		}
 		b.Created, b.Updated = moment(created), moment(updated)
 		builds = append(builds, b)
+		return json.Unmarshal([]byte(tags), &builds[len(builds)-1].Summary.Tags)
+	}, patterns...)
+	if err != nil {
+		return nil, err
 	}
-	return builds, rows.Err()
+	return builds, nil
 }
 
 // escape takes the meaning from the characters that LIKE treats as wildcards.

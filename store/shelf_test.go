@@ -60,16 +60,13 @@ func TestSearch(t *testing.T) {
 	}
 	s := newStore(t)
 	for _, sum := range shelf {
-		if _, err := s.CreateBuild(t.Context(), []byte(`{}`), sum); err != nil {
-			t.Fatal(err)
-		}
+		_, err := s.CreateBuild(t.Context(), []byte(`{}`), sum)
+		must(t, err)
 	}
 	for _, c := range cases {
 		t.Run(c.name, func(t *testing.T) {
 			builds, err := s.Builds(t.Context(), c.query)
-			if err != nil {
-				t.Fatal(err)
-			}
+			must(t, err)
 			var got []string
 			for _, b := range builds {
 				got = append(got, b.Summary.Title)
@@ -103,9 +100,7 @@ func TestSearchFollowsEdits(t *testing.T) {
 	}
 	save(t, s, b, 3)
 	got, err := s.Builds(t.Context(), "")
-	if err != nil {
-		t.Fatal(err)
-	}
+	must(t, err)
 	if len(got) != 2 || got[0].ID != b.ID {
 		t.Errorf("the build touched last is not the first of the shelf: %+v", got)
 	}

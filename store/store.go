@@ -16,6 +16,7 @@ import (
 	"net/url"
 	"path/filepath"
 	"runtime"
+	"slices"
 	"time"
 
 	_ "github.com/mattn/go-sqlite3" // the driver "sqlite3"
@@ -67,17 +68,20 @@ func open(ctx context.Context, path string, now func() time.Time, migrations fs.
 	if newest := known[len(known)-1]; have > newest {
 		return nil, &Newer{File: have, Program: newest}
 	}
-	if err := makeWritable(path); err != nil {
+	err = makeWritable(path)
+	if err != nil {
 		return nil, err
 	}
-	if err := migrate(ctx, path, have, known, migrations); err != nil {
+	err = migrate(ctx, path, have, known, migrations)
+	if err != nil {
 		return nil, err
 	}
 	s, err = connect(ctx, path, now)
 	if err != nil {
 		return nil, err
 	}
-	if err := s.emptyBin(ctx); err != nil {
+	err = s.emptyBin(ctx)
+	if err != nil {
 		return nil, errors.Join(err, s.Close())
 	}
 	return s, nil
@@ -91,6 +95,7 @@ func connect(ctx context.Context, path string, now func() time.Time) (*Store, er
 		"_synchronous", "FULL",
 		"_txlock", "immediate", // a writer that starts as a reader could find its place taken
 		"_cache_size", "-16000", // [KiB]
+		"_stmt_cache_size", "64", // the statements are few and always the same
 	))
 	if err != nil {
 		return nil, err
@@ -98,7 +103,8 @@ func connect(ctx context.Context, path string, now func() time.Time) (*Store, er
 	writer.SetMaxOpenConns(1)
 	writer.SetMaxIdleConns(1)
 	// The writer comes first: a read-only connection cannot set the journal mode.
-	if err := writer.PingContext(ctx); err != nil {
+	err = writer.PingContext(ctx)
+	if err != nil {
 		return nil, errors.Join(err, writer.Close())
 	}
 	reader, err := sql.Open("sqlite3", dsn(path,
@@ -106,6 +112,7 @@ func connect(ctx context.Context, path string, now func() time.Time) (*Store, er
 		"_query_only", "on",
 		"_foreign_keys", "on",
 		"_synchronous", "FULL",
+		"_stmt_cache_size", "64",
 	))
 	if err != nil {
 		return nil, errors.Join(err, writer.Close())
@@ -128,8 +135,8 @@ func (s *Store) Close() (err error) {
 // connection what it is set to.
 func dsn(path string, settings ...string) string {
 	query := url.Values{"_busy_timeout": {"5000"}} // [ms] for another process to finish writing
-	for i := 0; i < len(settings); i += 2 {
-		query.Set(settings[i], settings[i+1])
+	for pair := range slices.Chunk(settings, 2) {
+		query.Set(pair[0], pair[1])
 	}
 	name := url.URL{Scheme: "file", Opaque: (&url.URL{Path: path}).EscapedPath(), RawQuery: query.Encode()}
 	return name.String()
@@ -138,6 +145,22 @@ func dsn(path string, settings ...string) string {
 // querier is what reads have in common, inside a transaction and outside.
 type querier interface {
 	QueryRowContext(ctx context.Context, query string, args ...any) *sql.Row
+}
+
+// each runs a query and calls do for every row.
+func (s *Store) each(ctx context.Context, query string, do func(*sql.Rows) error, args ...any) error {
+	rows, err := s.reader.QueryContext(ctx, query, args...)
+	if err != nil {
+		return err
+	}
+	defer func() { _ = rows.Close() }() // rows.Err tells
+	for rows.Next() {
+		err = do(rows)
+		if err != nil {
+			return err
+		}
+	}
+	return rows.Err()
 }
 
 // write runs do in one transaction and commits it. A caller who has gone away
