@@ -15,23 +15,49 @@ type field struct {
 	owner    string // name of the struct that declares it
 	index    []int
 	required bool
+	limits   rule // zero where it holds no number, or a spread's own
+	limited  bool
 }
 
-// fieldsOf lists the members of a struct by their json tags, with those of
+// members lists the fields of every struct that a document is made of. It is
+// worked out once: looking tags up for each object took most of the time.
+var members = membersFrom(reflect.TypeFor[Build](), map[reflect.Type][]field{
+	reflect.TypeFor[spreadMembers](): tagged(reflect.TypeFor[spreadMembers]()),
+})
+
+// membersFrom adds the struct t and all that it is made of.
+func membersFrom(t reflect.Type, known map[reflect.Type][]field) map[reflect.Type][]field {
+	switch t.Kind() {
+	case reflect.Pointer, reflect.Slice, reflect.Map:
+		return membersFrom(t.Elem(), known)
+	case reflect.Struct:
+		if _, done := known[t]; done {
+			return known
+		}
+		known[t] = tagged(t)
+		for i := range t.NumField() {
+			membersFrom(t.Field(i).Type, known)
+		}
+	}
+	return known
+}
+
+// tagged lists the members of a struct by their json tags, with those of
 // embedded structs, in their order.
-func fieldsOf(t reflect.Type) []field {
+func tagged(t reflect.Type) []field {
 	var list []field
 	for i := range t.NumField() {
 		f := t.Field(i)
 		if f.Anonymous {
-			for _, inner := range fieldsOf(f.Type) {
+			for _, inner := range tagged(f.Type) {
 				inner.index = append([]int{i}, inner.index...)
 				list = append(list, inner)
 			}
 			continue
 		}
 		key, _, _ := strings.Cut(f.Tag.Get("json"), ",")
-		list = append(list, field{key: key, owner: t.Name(), index: []int{i}, required: f.Tag.Get("read") == "required"})
+		limits, limited := rules[t.Name()+"."+key]
+		list = append(list, field{key: key, owner: t.Name(), index: []int{i}, required: f.Tag.Get("read") == "required", limits: limits, limited: limited})
 	}
 	return list
 }
@@ -98,7 +124,7 @@ func (r *reader) object(n node, v reflect.Value, at string, ru rule, alien func(
 		r.fault(at, "must be an object, not %s", n.kind)
 		return
 	}
-	fields := fieldsOf(v.Type())
+	fields := members[v.Type()]
 	seen := map[string]bool{}
 	for _, m := range n.members {
 		if r.full() {
@@ -116,12 +142,12 @@ func (r *reader) object(n node, v reflect.Value, at string, ru rule, alien func(
 			r.unknown(here, m.key, fields, alien)
 			continue
 		}
-		limits, ok := rules[f.owner+"."+f.key]
-		if !ok {
+		limits := f.limits
+		if !f.limited {
 			limits = ru
 		}
 		r.fill(m.value, v.FieldByIndex(f.index), here, limits)
-		if f.required && m.value.kind == isText && m.value.text == "" && !mayBeEmpty[f.owner+"."+f.key] {
+		if f.required && m.value.kind == isText && m.value.text == "" && f.owner+"."+f.key != mayBeEmpty {
 			r.fault(here, "must not be empty")
 		}
 	}
@@ -132,8 +158,8 @@ func (r *reader) object(n node, v reflect.Value, at string, ru rule, alien func(
 	}
 }
 
-// mayBeEmpty names the required texts that may be empty.
-var mayBeEmpty = map[string]bool{"Build.title": true}
+// mayBeEmpty is the only required text that may be empty.
+const mayBeEmpty = "Build.title"
 
 func byKey(fields []field, key string) (field, bool) {
 	for _, f := range fields {

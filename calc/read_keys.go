@@ -6,6 +6,9 @@ import "strings"
 //
 // Source: RFC 6901.
 func escape(key string) string {
+	if !strings.ContainsAny(key, "~/") {
+		return key
+	}
 	return strings.NewReplacer("~", "~0", "/", "~1").Replace(key)
 }
 

@@ -168,6 +168,9 @@ func (s *scanner) text() (string, error) {
 	}
 	quoted := s.rest[:end+1]
 	s.rest = s.rest[end+1:]
+	if !bytes.ContainsRune(quoted, '\\') {
+		return string(quoted[1:end]), nil
+	}
 	var text string
 	if err := json.Unmarshal(quoted, &text); err != nil {
 		return "", fmt.Errorf("is not JSON: %w", err)

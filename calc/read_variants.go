@@ -78,7 +78,7 @@ func (r *reader) variant(n node, v reflect.Value, at string) {
 			if !ok {
 				continue
 			}
-			if _, ok := byKey(fieldsOf(f.Type.Elem()), unknown); ok {
+			if _, ok := byKey(members[f.Type.Elem()], unknown); ok {
 				return "a " + noun + " of " + key + " " + other.name + ", not of " + chosen.text
 			}
 		}
