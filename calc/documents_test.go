@@ -12,48 +12,48 @@ import (
 )
 
 // document reads one of testdata/documents.
-func document(t testing.TB, name string) []byte {
-	t.Helper()
+func document(tb testing.TB, name string) []byte {
+	tb.Helper()
 	raw, err := os.ReadFile(filepath.Join("testdata", "documents", name+".json"))
 	if err != nil {
-		t.Fatal(err)
+		tb.Fatal(err)
 	}
 	return raw
 }
 
 // documents reads all of testdata/documents by name.
-func documents(t testing.TB) map[string][]byte {
-	t.Helper()
+func documents(tb testing.TB) map[string][]byte {
+	tb.Helper()
 	files, err := filepath.Glob(filepath.Join("testdata", "documents", "*.json"))
 	if err != nil || len(files) < 6 {
-		t.Fatalf("found %d documents, %v", len(files), err)
+		tb.Fatalf("found %d documents, %v", len(files), err)
 	}
 	all := map[string][]byte{}
 	for _, file := range files {
 		name := strings.TrimSuffix(filepath.Base(file), ".json")
-		all[name] = document(t, name)
+		all[name] = document(tb, name)
 	}
 	return all
 }
 
 // referenceBuilds reads the builds of the simulator's cases by file name.
-func referenceBuilds(t testing.TB) map[string][]byte {
-	t.Helper()
+func referenceBuilds(tb testing.TB) map[string][]byte {
+	tb.Helper()
 	files, err := filepath.Glob(filepath.Join("..", "testdata", "reference", "operating-points", "*.json"))
 	if err != nil || len(files) < 42 {
-		t.Fatalf("found %d cases, %v", len(files), err)
+		tb.Fatalf("found %d cases, %v", len(files), err)
 	}
 	all := map[string][]byte{}
 	for _, file := range files {
 		raw, err := os.ReadFile(file)
 		if err != nil {
-			t.Fatal(err)
+			tb.Fatal(err)
 		}
 		var c struct {
 			Build json.RawMessage `json:"build"`
 		}
 		if err := json.Unmarshal(raw, &c); err != nil {
-			t.Fatal(err)
+			tb.Fatal(err)
 		}
 		all[filepath.Base(file)] = c.Build
 	}
@@ -62,11 +62,11 @@ func referenceBuilds(t testing.TB) map[string][]byte {
 
 // value decodes JSON into the plain types, so that two texts of one value
 // compare equal.
-func value(t testing.TB, raw []byte) any {
-	t.Helper()
+func value(tb testing.TB, raw []byte) any {
+	tb.Helper()
 	var v any
 	if err := json.Unmarshal(raw, &v); err != nil {
-		t.Fatal(err)
+		tb.Fatal(err)
 	}
 	return v
 }

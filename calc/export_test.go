@@ -11,7 +11,7 @@ type Limit struct {
 // its key; the second ones are those of a pair's other number.
 func LimitsOf(owner, key string) (first, second Limit, ok bool) {
 	ru, ok := rules[owner+"."+key]
-	return Limit(ru.first.limit()), Limit(ru.second.limit()), ok
+	return ru.first.limit(), ru.second.limit(), ok
 }
 
 func (f figure) limit() Limit { return Limit{f.unit, f.least, f.most, f.above} }

@@ -35,8 +35,8 @@ func membersFrom(t reflect.Type, known map[reflect.Type][]field) map[reflect.Typ
 			return known
 		}
 		known[t] = tagged(t)
-		for i := range t.NumField() {
-			membersFrom(t.Field(i).Type, known)
+		for f := range t.Fields() {
+			membersFrom(f.Type, known)
 		}
 	}
 	return known

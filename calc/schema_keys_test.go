@@ -2,6 +2,7 @@ package calc_test
 
 import (
 	"encoding/json"
+	"fmt"
 	"os"
 	"reflect"
 	"slices"
@@ -43,8 +44,8 @@ func structs(root reflect.Type, into map[string]reflect.Type) {
 		return
 	}
 	into[root.Name()] = root
-	for i := range root.NumField() {
-		structs(root.Field(i).Type, into)
+	for f := range root.Fields() {
+		structs(f.Type, into)
 	}
 }
 
@@ -59,8 +60,7 @@ type jsonField struct {
 
 func jsonFields(s reflect.Type) []jsonField {
 	var list []jsonField
-	for i := range s.NumField() {
-		f := s.Field(i)
+	for f := range s.Fields() {
 		if f.Anonymous {
 			list = append(list, jsonFields(f.Type)...)
 			continue
@@ -205,7 +205,7 @@ func TestBuildSchemaHasAllVariants(t *testing.T) {
 			}
 			names, _ := property["enum"].([]any)
 			for _, name := range names {
-				got[name.(string)] = true
+				got[fmt.Sprint(name)] = true
 			}
 		}
 		if len(got) != len(c.want) {

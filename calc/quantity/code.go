@@ -59,12 +59,11 @@ func ParseCode(text string) (Code, error) {
 // a field of ohms: the tolerance has its own field and must not be dropped
 // unseen. It is nil when text is no such marking.
 func toleranceLetter(text string) error {
-	code, err := ParseCode(text)
-	if err != nil || !code.Toleranced {
-		return nil
+	if code, err := ParseCode(text); err == nil && code.Toleranced {
+		ohms, letter := text[:len(text)-1], text[len(text)-1:]
+		return fmt.Errorf("%q ends in a tolerance letter: write %s here, and for the %s a tolerance of %s", text, ohms, letter, Text(code.Tolerance, Percent))
 	}
-	ohms, letter := text[:len(text)-1], text[len(text)-1:]
-	return fmt.Errorf("%q ends in a tolerance letter: write %s here, and for the %s a tolerance of %s", text, ohms, letter, Text(code.Tolerance, Percent))
+	return nil
 }
 
 // FormatCode writes ohms as notes and drawings do: "4k7", "R47", "110R". It is

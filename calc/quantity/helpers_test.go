@@ -1,6 +1,7 @@
 package quantity_test
 
 import (
+	"bytes"
 	"encoding/csv"
 	"math"
 	"os"
@@ -19,12 +20,11 @@ func near(t *testing.T, name string, got, want, tol float64) {
 // published reads a table of testdata/published, each row by its column names.
 func published(t *testing.T, name string, rows int) []map[string]string {
 	t.Helper()
-	f, err := os.Open(filepath.Join("..", "..", "testdata", "published", name))
+	raw, err := os.ReadFile(filepath.Join("..", "..", "testdata", "published", name))
 	if err != nil {
 		t.Fatal(err)
 	}
-	defer f.Close()
-	all, err := csv.NewReader(f).ReadAll()
+	all, err := csv.NewReader(bytes.NewReader(raw)).ReadAll()
 	if err != nil {
 		t.Fatal(err)
 	}

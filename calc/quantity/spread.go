@@ -76,7 +76,7 @@ func (u unit) split(s string) []string {
 		return strings.Split(s, "|")
 	}
 	var pieces []string
-	for _, word := range strings.Fields(s) {
+	for word := range strings.FieldsSeq(s) {
 		if len(pieces) == 0 || startsNumber(word) && pieces[len(pieces)-1] != "-" && !u.own(word) {
 			pieces = append(pieces, word)
 		} else {
