@@ -40,6 +40,12 @@ func (s *server) routes() http.Handler {
 		r.Get("/builds/{id}/report", s.api(s.sendReport))
 	})
 
+	r.Group(func(r chi.Router) {
+		r.Use(maxBody(pageBody))
+		s.shelfRoutes(r)
+		s.buildRoutes(r)
+		s.drawerRoutes(r)
+	})
 	return r
 }
 
