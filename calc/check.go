@@ -82,7 +82,11 @@ func (p *plant) typical(r *Report, inside float64) {
 		s := StringReport{Label: l.spec.Label, Quantity: l.spec.Quantity, Kind: l.spec.Driver.Kind}
 		s.Voltages = Voltages{
 			Feed: net.Voltage(l.Feed), Tail: net.Voltage(l.Tail),
-			Control: l.point(l.Control), Base: l.point(l.Base), Sense: l.point(l.Sense),
+			Control: l.point(l.Control), Base: l.point(l.Base), Sense: l.point(l.Sense), Gate: l.point(l.Gate),
+		}
+		if l.HighSide {
+			top := net.Voltage(l.Feed) - net.Voltage(l.Tail)
+			s.Voltages.Tail, s.Voltages.Sense, s.Voltages.Top = 0, nil, &top
 		}
 		ledPower += l.quantity * l.LEDVolts() * net.LEDCurrent(l.Stack)
 		l.typ = make([]float64, l.figures())
@@ -232,10 +236,7 @@ func (p *plant) railPowerLimit(r *railLine, k int) *float64 {
 		}
 		return nil
 	}
-	if part, ok := p.build.Parts[d.Part]; ok && part.Transistor != nil {
-		return part.Transistor.MaxPower
-	}
-	return nil
+	return ratingsOf(p.build.Parts[d.Part]).power
 }
 
 // resistor returns the rail's resistor in a role, nil where it has none.
@@ -260,16 +261,31 @@ func (r *Rail) resistor(role string) *Resistor {
 }
 
 func (p *plant) junctionLimit(key string) *float64 {
-	part, ok := p.build.Parts[key]
+	return ratingsOf(p.build.Parts[key]).junction
+}
+
+// ratings are a part's limits, whatever it is; what is not given is nil.
+type ratings struct {
+	power, junction, rth, volts, amps *float64
+}
+
+func ratingsOf(part Part) ratings {
 	switch {
-	case !ok:
-		return nil
 	case part.LED != nil:
-		return part.LED.MaxJunction
+		return ratings{junction: part.LED.MaxJunction, rth: part.LED.RthJunctionAmbient, amps: part.LED.MaxCurrent}
 	case part.Transistor != nil:
-		return part.Transistor.MaxJunction
+		q := part.Transistor
+		return ratings{q.MaxPower, q.MaxJunction, q.RthJunctionAmbient, q.MaxCollectorEmitterVoltage, q.MaxCollectorCurrent}
+	case part.MOSFET != nil:
+		q := part.MOSFET
+		return ratings{q.MaxPower, q.MaxJunction, q.RthJunctionAmbient, q.MaxDrainSourceVoltage, q.MaxDrainCurrent}
+	case part.Regulator != nil:
+		q := part.Regulator
+		return ratings{q.MaxPower, q.MaxJunction, q.RthJunctionAmbient, q.MaxInputOutput, q.MaxCurrent}
+	case part.Module != nil:
+		return ratings{power: part.Module.MaxPower}
 	}
-	return nil
+	return ratings{}
 }
 
 // resistorWatts is the rating of the resistor in a role, nil if not given.
@@ -296,6 +312,13 @@ func (s *String) resistor(role string) *Resistor {
 		byRole = map[string]*Resistor{"sense_resistor": &d.ReferenceSink.Sense, "bias_resistor": &d.ReferenceSink.Bias}
 	case d.RailSink != nil:
 		byRole = map[string]*Resistor{"sense_resistor": &d.RailSink.Sense}
+	case d.OpampSink != nil:
+		byRole = map[string]*Resistor{"sense_resistor": &d.OpampSink.Sense}
+		if v := d.OpampSink.Control.Divider; v != nil {
+			byRole["upper_resistor"], byRole["lower_resistor"] = &v.Upper, &v.Lower
+		}
+	case d.Regulator != nil:
+		byRole = map[string]*Resistor{"set_resistor": &d.Regulator.Set}
 	case d.TwoTransistor != nil:
 		byRole = map[string]*Resistor{"sense_resistor": &d.TwoTransistor.Sense, "bias_resistor": &d.TwoTransistor.Bias}
 	}

@@ -13,10 +13,10 @@ func (b *book) checkHeat(l *line, s *StringReport) {
 		switch {
 		case d.IsLED():
 			b.checkLED(l, s, k)
-		case d.IsTransistor():
-			b.checkTransistor(l.where(), l.pointer("/driver"), &s.Devices[k])
-			if k == l.Holder {
-				b.checkHolder(l, s)
+		case d.Family() != "":
+			b.checkActive(l.where(), l.pointer("/driver"), &s.Devices[k], d.Family())
+			if k == l.Holder && d.Family() != "module" {
+				b.checkHolder(l, s, d.Family())
 			}
 		case d.IsResistor():
 			b.checkResistor(l.where(), l.pointer("/driver"+resistorPath(d.Role)), &s.Devices[k], l.spec.resistor(d.Role))
@@ -82,40 +82,54 @@ func deviceName(d *DeviceReport) string {
 	return role + " " + d.Part
 }
 
-// checkTransistor verifies the heat of a transistor of a string or a rail.
-func (b *book) checkTransistor(where, at string, d *DeviceReport) {
-	part := b.p.build.Parts[d.Part].Transistor
+// checkActive verifies the heat of a transistor, regulator or module of a
+// string or a rail; family is what its codes begin with.
+func (b *book) checkActive(where, at string, d *DeviceReport, family string) {
+	rated := ratingsOf(b.p.build.Parts[d.Part])
 	name := deviceName(d)
 	most := d.Power.Max
 	air := b.r.Supply.Inside.Max
-	f := Finding{Code: "transistor-power", Where: where, At: at, Value: &most, Unit: "W",
+	f := Finding{Code: family + "-power", Where: where, At: at, Value: &most, Unit: "W",
 		Source: "linear derating; malvino, ex. 12-14; limit: " + sourceRating}
 	switch {
-	case part.MaxPower != nil && part.MaxJunction != nil:
-		limit := heat.Derated(*part.MaxPower, 25, *part.MaxJunction, air)
+	case rated.power == nil:
+		b.missing(f, "rated dissipation (max_power)", d.Part)
+	case rated.junction == nil && family != "module":
+		b.missing(f, "greatest junction temperature (max_junction)", d.Part)
+	default:
+		limit := *rated.power
+		f.Working = fmt.Sprintf("worst case %s against the rated %s", watts(most), watts(limit))
+		if rated.junction != nil {
+			limit = heat.Derated(*rated.power, 25, *rated.junction, air)
+			f.Working = fmt.Sprintf("%s at 25 °C falls to nothing at %s: at %s it is %s", watts(*rated.power), celsius(*rated.junction), celsius(air), watts(limit))
+		}
 		f.Limit = &limit
 		f.Severity = atMost(most, limit, tightPower)
 		f.Message = fmt.Sprintf("%s: up to %s of the %s allowed in air of %s", name, watts(most), watts(limit), celsius(air))
-		f.Working = fmt.Sprintf("%s at 25 °C falls to nothing at %s: at %s it is %s", watts(*part.MaxPower), celsius(*part.MaxJunction), celsius(air), watts(limit))
 		b.add(f)
-	case part.MaxPower == nil:
-		b.missing(f, "rated dissipation (max_power)", d.Part)
-	default:
-		b.missing(f, "greatest junction temperature (max_junction)", d.Part)
 	}
-	b.checkJunction(where, at, name, d, "transistor-junction", part.MaxJunction, part.RthJunctionAmbient)
+	if family != "module" {
+		b.checkJunction(where, at, name, d, family+"-junction", rated.junction, rated.rth)
+	}
 }
 
-// checkHolder verifies the ratings of the transistor that holds the current.
-func (b *book) checkHolder(l *line, s *StringReport) {
+// checkHolder verifies the ratings of the part that holds the current.
+func (b *book) checkHolder(l *line, s *StringReport, family string) {
 	d := &s.Devices[l.Holder]
-	part := b.p.build.Parts[d.Part].Transistor
+	rated := ratingsOf(b.p.build.Parts[d.Part])
 	name := deviceName(d)
-	b.checkRating(l, "transistor-voltage", part.MaxCollectorEmitterVoltage, b.p.build.Supply.Voltage.Max, "V", volts,
-		name+" with the LEDs dark", d.Part, "collector-emitter rating (max_collector_emitter_voltage)",
-		"with the LEDs dark or shorted nothing but the transistor stands against the supply at its highest")
-	b.checkRating(l, "transistor-current", part.MaxCollectorCurrent, s.Current.Max, "A", amps,
-		name, d.Part, "collector current rating (max_collector_current)", "worst-case string current")
+	volt, ampere := "collector-emitter rating (max_collector_emitter_voltage)", "collector current rating (max_collector_current)"
+	switch l.spec.Driver.Kind {
+	case KindOpampSink:
+		volt, ampere = "drain-source rating (max_drain_source_voltage)", "drain current rating (max_drain_current)"
+	case KindRegulator:
+		volt, ampere = "input-output rating (max_input_output)", "current rating (max_current)"
+	}
+	b.checkRating(l, family+"-voltage", rated.volts, b.p.build.Supply.Voltage.Max, "V", volts,
+		name+" with the LEDs dark", d.Part, volt,
+		"with the LEDs dark or shorted nothing but this part stands against the supply at its highest")
+	b.checkRating(l, family+"-current", rated.amps, s.Current.Max, "A", amps,
+		name, d.Part, ampere, "worst-case string current")
 }
 
 func (b *book) checkRating(l *line, code string, limit *float64, value float64, unit string, text func(float64) string, name, part, figure, working string) {

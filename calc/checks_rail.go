@@ -52,8 +52,8 @@ func (b *book) checkRail(r *railLine) {
 	}
 	for k, d := range r.Devices {
 		switch {
-		case d.IsTransistor():
-			b.checkTransistor(r.name(), at(""), &report.Devices[k])
+		case d.Family() != "":
+			b.checkActive(r.name(), at(""), &report.Devices[k], d.Family())
 		case d.IsResistor():
 			b.checkResistor(r.name(), at(resistorPath(d.Role)), &report.Devices[k], r.spec.resistor(d.Role))
 		}

@@ -28,6 +28,7 @@ func (b *book) checkString(l *line) {
 	} else {
 		b.checkHeadroom(l, s)
 		b.checkDrive(l, s)
+		b.checkBought(l, s)
 	}
 	b.checkWanted(l, s)
 	b.checkHeat(l, s)

@@ -71,7 +71,9 @@ func compile(b *Build) (*plant, error) {
 		if s.FedBy != "" && s.FedBy != "supply" {
 			l.run = p.runAt[s.FedBy]
 		}
-		l.assemble(b)
+		if err := l.assemble(b); err != nil {
+			return nil, err
+		}
 		if d := s.Driver.RailSink; d != nil {
 			l.rail = railOf[d.Rail]
 			l.rail.lines = append(l.rail.lines, l)
@@ -90,7 +92,7 @@ func refuse(b *Build) error {
 	var faults Invalid
 	for i := range b.Strings {
 		switch kind := b.Strings[i].Driver.Kind; kind {
-		case KindResistor, KindFollowerSink, KindReferenceSink, KindTwoTransistor, KindRailSink:
+		case KindResistor, KindFollowerSink, KindReferenceSink, KindTwoTransistor, KindRailSink, KindOpampSink, KindRegulator, KindModule:
 		default:
 			faults = append(faults, Fault{fmt.Sprintf("/strings/%d/driver/kind", i),
 				fmt.Sprintf("a driver of kind %q cannot be solved by this version", kind)})
@@ -161,7 +163,7 @@ func (p *plant) heatWires(celsius float64) {
 }
 
 // assemble wires the string's circuit with the parts of the build.
-func (l *line) assemble(b *Build) {
+func (l *line) assemble(b *Build) error {
 	leds := l.leds(b)
 	d := &l.spec.Driver
 	switch {
@@ -191,7 +193,14 @@ func (l *line) assemble(b *Build) {
 			Pass: l.transistor(b, f.Pass), Sensor: l.transistor(b, f.Sensor),
 			Bias: resistance(f.Bias), Sense: resistance(f.Sense),
 		})
+	case d.OpampSink != nil:
+		return l.assembleOpamp(b, leds, d.OpampSink)
+	case d.Regulator != nil:
+		return l.assembleRegulator(b, leds, d.Regulator)
+	case d.ModuleInstance != nil:
+		return l.assembleModule(b, leds, d.ModuleInstance)
 	}
+	return nil
 }
 
 func resistance(r Resistor) driver.Resistance {

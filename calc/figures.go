@@ -3,6 +3,7 @@ package calc
 import (
 	"math"
 
+	"lanternbook/calc/circuit"
 	"lanternbook/calc/heat"
 	"lanternbook/calc/spread"
 )
@@ -17,7 +18,8 @@ const (
 	figDraw            // [A] from the feed
 	figFeed            // [V]
 	figDrive           // [A] that bias or pull-up bring to the base
-	figSpare           // [A] left for follower, sensor or reference
+	figSpare           // [A] left for follower, sensor or reference; [V] for a MOSFET's gate
+	figControl         // [V] of the control, 0 without
 	figDevices
 )
 
@@ -40,6 +42,10 @@ func (l *line) collect(out []float64) {
 	out[figFeed] = net.Voltage(l.Feed)
 	out[figFlux] = l.flux()
 	out[figDrive], out[figSpare] = l.drive()
+	out[figControl] = 0
+	if l.Control != circuit.None {
+		out[figControl] = net.Voltage(l.Control)
+	}
 	for k, d := range l.Devices {
 		out[figDevices+2*k] = l.Power(d)
 		out[figDevices+2*k+1] = l.Junction(d)
@@ -69,6 +75,9 @@ func (l *line) flux() float64 {
 // drive is the current in amperes that bias or pull-up bring, and what of it
 // the sink's base leaves over.
 func (l *line) drive() (brings, spare float64) {
+	if l.Gate != circuit.None {
+		return 0, l.Net.Voltage(l.Feed) - l.High - l.Net.Voltage(l.Gate)
+	}
 	k := l.driveResistor()
 	if k < 0 {
 		return 0, 0

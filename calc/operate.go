@@ -207,8 +207,32 @@ func (l *line) behindOf(volts, ohms, extra float64) error {
 		l.Start(volts)
 		l.started = true
 	}
-	l.FeedBehind(volts, ohms, extra)
-	return l.solve()
+	if !l.Switching() {
+		l.FeedBehind(volts, ohms, extra)
+		return l.solve()
+	}
+	// The cable carries what the module takes, not what the LEDs carry.
+	other := 0.0
+	for range treePatience {
+		l.FeedBehind(volts, ohms, extra+other)
+		if err := l.solve(); err != nil {
+			return err
+		}
+		next := l.Draw() - l.Net.LEDCurrent(l.Stack)
+		if math.Abs(next-other)*ohms < treeRest {
+			return nil
+		}
+		other = next
+	}
+	return &Unsolved{l.spec.Label, errors.New("module and cable do not settle")}
+}
+
+// senseVolts is what stands across the resistor that measures the current.
+func (l *line) senseVolts() float64 {
+	if l.Sense == circuit.None {
+		return 0
+	}
+	return l.Net.Voltage(l.Sense)
 }
 
 // leftOver is a string's headroom with what it is made of.
@@ -223,19 +247,20 @@ type leftOver struct {
 // headroom finds what is left over at the string's present operating point,
 // which stands behind a resistance in ohms from an ideal voltage in volts, and
 // leaves the string as it was. The full current is what flows with the
-// collector at the base, the edge of a transistor's active region: a higher
-// collector adds a little by its Early effect and by its heat, which no string
-// needs.
+// tail at the driver's edge, for a transistor its collector at its base where
+// the active region ends: a higher collector adds a little by its Early effect
+// and by its heat, which no string needs.
 func (l *line) headroom(volts, ohms float64) (leftOver, error) {
 	net := l.Net
-	if l.Base == circuit.None {
+	if l.Edge == nil {
 		across := net.Voltage(l.Tail)
 		return leftOver{headroom: across, full: net.LEDCurrent(l.Stack), feed: net.Voltage(l.Feed), need: across, sense: across}, nil
 	}
 	l.Save(&l.saved)
 	defer l.Load(&l.saved)
 	r := leftOver{full: net.LEDCurrent(l.Stack), feed: net.Voltage(l.Feed)}
-	base, short := net.Voltage(l.Base), net.Voltage(l.Tail) < net.Voltage(l.Base)
+	base := l.Edge()
+	short := net.Voltage(l.Tail) < base
 	net.Detach(l.Stack)
 	if !short {
 		l.FeedAt(r.feed)
@@ -251,11 +276,12 @@ func (l *line) headroom(volts, ohms float64) (leftOver, error) {
 			return r, &Unsolved{l.spec.Label, err}
 		}
 		full := net.HeldCurrent(l.Tail)
-		moved := math.Abs(net.Voltage(l.Base) - base)
+		edge := l.Edge()
+		moved := math.Abs(edge - base)
 		if short {
 			moved += ohms * math.Abs(full-r.full)
 		}
-		r.full, base = full, net.Voltage(l.Base)
+		r.full, base = full, edge
 		if moved < baseRest {
 			break
 		}
@@ -277,7 +303,7 @@ func (l *line) findNeed(r *leftOver, high float64) error {
 	net := l.Net
 	low, lost := 0.0, (1-held)*r.full
 	base := high
-	try := math.Min(high, net.Voltage(l.Sense)+usualSaturation)
+	try := math.Min(high, l.senseVolts()+usualSaturation)
 	if l.below > 0 && base-l.below > 0 {
 		try = base - l.below
 	}
@@ -302,6 +328,6 @@ func (l *line) findNeed(r *leftOver, high float64) error {
 		try = next
 	}
 	l.below = base - try
-	r.need, r.sense = net.Voltage(l.Tail), net.Voltage(l.Sense)
+	r.need, r.sense = net.Voltage(l.Tail), l.senseVolts()
 	return nil
 }

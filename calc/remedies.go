@@ -323,6 +323,9 @@ func (l *line) setSense(ohms float64, text string) attempt {
 
 // senseUp fits larger sense (or series) resistors of E24 in turn.
 func (l *line) senseUp() []attempt {
+	if l.SenseAt < 0 {
+		return nil
+	}
 	role := l.Devices[l.SenseAt].Role
 	ohms := l.spec.resistor(role).Ohms
 	var out []attempt
@@ -559,6 +562,8 @@ func (b *Build) clone() Build {
 		d.ReferenceSink = copyOf(d.ReferenceSink)
 		d.TwoTransistor = copyOf(d.TwoTransistor)
 		d.RailSink = copyOf(d.RailSink)
+		d.OpampSink = copyOf(d.OpampSink)
+		d.Regulator = copyOf(d.Regulator)
 		if d.FollowerSink != nil {
 			d.FollowerSink.Control.Divider = copyOf(d.FollowerSink.Control.Divider)
 		}

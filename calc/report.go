@@ -57,6 +57,8 @@ type Voltages struct {
 	Control *float64 `json:"control,omitempty"` // [V]
 	Base    *float64 `json:"base,omitempty"`    // [V] the sink transistor's
 	Sense   *float64 `json:"sense,omitempty"`   // [V] top of the sense resistor
+	Gate    *float64 `json:"gate,omitempty"`    // [V] a MOSFET's
+	Top     *float64 `json:"top,omitempty"`     // [V] upper end of the LEDs, where the driver stands above them
 }
 
 // DeviceReport is one part of one string, or one of several LEDs alike: its

@@ -57,6 +57,9 @@ func Suggest(b Build, i int) (Suggestion, error) {
 		return Suggestion{}, err
 	}
 	l := p.strings[i]
+	if l.SenseAt < 0 {
+		return Suggestion{}, nil
+	}
 	t := tuner{l: l, at: corner{volts: l.Net.Voltage(l.Feed) + l.path*l.Draw(), ohms: l.path, ambient: b.Ambient.Typ, inside: inside}}
 	w := b.Strings[i].Wanted
 	t.light = w.Current == nil
@@ -83,13 +86,24 @@ func Suggest(b Build, i int) (Suggestion, error) {
 		}
 	}
 	t.setOhms(l.spec.resistor(role).Ohms)
-	if f := l.spec.Driver.FollowerSink; f != nil && f.Control.Volts != nil {
+	if c := l.spec.control(); c != nil && c.Volts != nil {
 		most := b.Supply.Voltage.Typ
 		if v, ok := t.find(1e-3, most, func(v float64) { l.Net.Hold(l.Source, v) }); ok {
 			s.ControlAt, s.ControlVolts = l.pointer("/driver/control/volts"), v
 		}
 	}
 	return s, nil
+}
+
+// control is the string's own control, nil where its driver has none.
+func (s *String) control() *Control {
+	switch {
+	case s.Driver.FollowerSink != nil:
+		return &s.Driver.FollowerSink.Control
+	case s.Driver.OpampSink != nil:
+		return &s.Driver.OpampSink.Control
+	}
+	return nil
 }
 
 // tuner turns one setting until the string gives what is wanted.

@@ -32,6 +32,11 @@ type Circuit struct {
 	bjts      []bjt
 	clamps    []clamp
 
+	fets       []fet
+	amps       []amp
+	regulators []regulator
+	sources    []source
+
 	// Work space of a solve; see newton.go.
 	row     []int // node of each unknown
 	col     []int // unknown of each node, −1 for a held one

@@ -53,6 +53,22 @@ func (c *Circuit) Solve() error {
 	if !c.ready {
 		c.prepare()
 	}
+	if !c.modal() {
+		return c.solve()
+	}
+	for range mostModes {
+		err := c.solve()
+		if err != nil && !c.starve() {
+			return err
+		}
+		if err == nil && !c.remode() {
+			return nil
+		}
+	}
+	return c.search.copy()
+}
+
+func (c *Circuit) solve() error {
 	for i := range c.bjts {
 		if q := &c.bjts[i]; q.rth == 0 && q.t != c.air {
 			q.t, q.fresh = c.air, false
@@ -187,6 +203,15 @@ func (c *Circuit) newton(worst *Unsolved) bool {
 				moved, at = a, n
 			}
 		}
+		for i := range c.fets {
+			f := &c.fets[i]
+			f.step(c.v[f.g]-c.v[f.s], c.v[f.d]-c.v[f.s])
+		}
+		for i := range c.sources {
+			if s := &c.sources[i]; s.mode != holding {
+				s.current = s.conducts * c.v[s.n]
+			}
+		}
 		kelvin := 0.0
 		for i := range c.stacks {
 			if s := &c.stacks[i]; !s.off {
@@ -258,6 +283,9 @@ func (c *Circuit) assemble() {
 		c.spreadRow(nc, nb, ne, nc, gc[0], gc[1])
 		c.spreadRow(nb, nb, ne, nc, gb[0], gb[1])
 		c.spreadRow(ne, nb, ne, nc, -gc[0]-gb[0], -gc[1]-gb[1])
+	}
+	if len(c.fets)+len(c.sources)+len(c.regulators)+len(c.amps) > 0 {
+		c.assembleModal()
 	}
 }
 

@@ -34,7 +34,7 @@ func (s *ledStack) step(air, vab float64) {
 
 const (
 	rated   = 25.0 // °C at which LED curves are stated
-	hottest = 110  // exponent that no LED current reaches
+	hottest = 650  // exponent that no LED current reaches
 
 	// smallestTurn keeps dv/dx above 0 where a positive tempco would turn it.
 	smallestTurn = 1e-3

@@ -7,6 +7,10 @@ type State struct {
 	held    []bool
 	stacks  []ledStack
 	bjts    []bjt
+
+	amps       []amp
+	regulators []regulator
+	sources    []source
 }
 
 // Save keeps the circuit's voltages, holds, loads and the state of its parts.
@@ -16,6 +20,9 @@ func (c *Circuit) Save(s *State) {
 	s.held = append(s.held[:0], c.held...)
 	s.stacks = append(s.stacks[:0], c.stacks...)
 	s.bjts = append(s.bjts[:0], c.bjts...)
+	s.amps = append(s.amps[:0], c.amps...)
+	s.regulators = append(s.regulators[:0], c.regulators...)
+	s.sources = append(s.sources[:0], c.sources...)
 }
 
 // Load puts the circuit back to what Save kept.
@@ -25,6 +32,9 @@ func (c *Circuit) Load(s *State) {
 	copy(c.held, s.held)
 	copy(c.stacks, s.stacks)
 	copy(c.bjts, s.bjts)
+	copy(c.amps, s.amps)
+	copy(c.regulators, s.regulators)
+	copy(c.sources, s.sources)
 	c.ready = false
 }
 

@@ -64,15 +64,18 @@ const (
 	// small LEDs are 0.15 V to 0.4 V over the test current.
 	assumedN    = 2.0
 	assumedRise = 0.2 // [V]
+	oneDie      = 3.0 // [V] that a package of several dice shows for each
 )
 
 // LEDFromPoint makes an LED's curve from one point of its datasheet, a forward
-// voltage in volts at a test current in amperes.
+// voltage in volts at a test current in amperes. A forward voltage of several
+// dice in one package gives the slope of so many.
 //
 // Source: derivation, with assumptions of common practice, no source.
 func LEDFromPoint(volts, current float64) LED {
-	d := LED{N: assumedN}
-	d.Rs = math.Max(0, assumedRise-d.Slope()) / current
+	dice := math.Max(1, math.Round(volts/oneDie))
+	d := LED{N: assumedN * dice}
+	d.Rs = math.Max(0, assumedRise*dice-d.Slope()) / current
 	d.Is = current / math.Expm1((volts-current*d.Rs)/d.Slope())
 	return d
 }

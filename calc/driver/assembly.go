@@ -52,11 +52,15 @@ type Board struct {
 	Source circuit.Node
 
 	stack    circuit.LEDsID
+	tail     circuit.Node
 	start    func(feed float64)
 	upstream circuit.Node
 	cable    circuit.ResistorID
 	behind   bool
 	extra    float64 // [A] drawn at the feed besides
+
+	quiescent float64 // [A] that an op-amp takes from the feed
+	switching float64 // [1] efficiency of a switching module; 0 is linear
 }
 
 // Assembly is one string as a circuit, ready to solve: hold Feed, set the air,
@@ -74,6 +78,19 @@ type Assembly struct {
 	// Holder is the index in Devices of the part that holds the current, and
 	// SenseAt that of the resistor which measures it.
 	Holder, SenseAt int
+
+	// Edge returns the voltage in volts at which the tail counts as fully held
+	// at the last solution; nil for a resistor, which holds nothing.
+	Edge func() float64
+	// HighSide tells that the driver stands above the LEDs in the trade's
+	// drawing: the circuit is the same in series either way.
+	HighSide bool
+	// Gate is a MOSFET's gate, circuit.None without, and High is how near in
+	// volts what drives it comes to the feed.
+	Gate circuit.Node
+	High float64
+
+	setOhms func(ohms float64)
 }
 
 // Knob is one value of a string that may be off.
@@ -102,9 +119,9 @@ func (k Knob) Turn(turn float64) { k.set(turn) }
 func (a *Board) FeedAt(volts float64) {
 	if a.behind {
 		a.Net.Switch(a.cable, false)
-		a.Net.Draw(a.Feed, 0)
 		a.behind, a.extra = false, 0
 	}
+	a.Net.Draw(a.Feed, a.quiescent)
 	a.Net.Hold(a.Feed, volts)
 }
 
@@ -113,7 +130,7 @@ func (a *Board) FeedAt(volts float64) {
 func (a *Board) FeedBehind(volts, ohms, extra float64) {
 	a.Net.Hold(a.upstream, volts)
 	a.Net.SetOhms(a.cable, ohms)
-	a.Net.Draw(a.Feed, extra)
+	a.Net.Draw(a.Feed, extra+a.quiescent)
 	a.extra = extra
 	if !a.behind {
 		a.Net.Switch(a.cable, true)
@@ -125,11 +142,22 @@ func (a *Board) FeedBehind(volts, ohms, extra float64) {
 // Draw returns what the string takes from its feed in amperes, without what is
 // drawn there besides.
 func (a *Board) Draw() float64 {
+	if a.switching > 0 {
+		return a.ledPower() / (a.switching * max(a.Net.Voltage(a.Feed), leastFeed))
+	}
 	if a.behind {
 		return a.Net.ResistorCurrent(a.cable) - a.extra
 	}
 	return a.Net.HeldCurrent(a.Feed)
 }
+
+// Switching says whether the string takes from its feed another current than
+// its LEDs carry.
+func (a *Board) Switching() bool { return a.switching > 0 }
+
+// leastFeed keeps a switching module's current finite on a feed of nothing, in
+// volts.
+const leastFeed = 1e-3
 
 // State is a solution of the string to come back to.
 type State struct {
@@ -179,6 +207,11 @@ const (
 	isBJT
 	isResistor
 	isReference
+	isFET
+	isAmp
+	isRegulator
+	isSetResistor
+	isModule
 )
 
 // Power returns the dissipation in watts of one device at the last solution;
@@ -191,8 +224,18 @@ func (a *Board) Power(d Device) float64 {
 		return a.Net.BJTPower(circuit.BJTID(d.id))
 	case isResistor:
 		return a.Net.ResistorPower(circuit.ResistorID(d.id))
-	default:
+	case isReference:
 		return a.Net.ClampPower(circuit.ClampID(d.id))
+	case isFET:
+		return a.Net.FETPower(circuit.FETID(d.id))
+	case isAmp:
+		return a.quiescent * a.Net.Voltage(a.Feed)
+	case isRegulator:
+		return a.Net.RegulatorPower(circuit.RegulatorID(d.id))
+	case isSetResistor:
+		return a.Net.SetPower(circuit.RegulatorID(d.id))
+	default:
+		return a.modulePower(circuit.SourceID(d.id))
 	}
 }
 
@@ -204,6 +247,10 @@ func (a *Board) Junction(d Device) float64 {
 		return a.Net.LEDJunction(a.stack, d.id)
 	case isBJT:
 		return a.Net.BJTJunction(circuit.BJTID(d.id))
+	case isFET:
+		return a.Net.FETJunction(circuit.FETID(d.id))
+	case isRegulator:
+		return a.Net.RegulatorJunction(circuit.RegulatorID(d.id))
 	default:
 		return a.Net.Air()
 	}
@@ -213,7 +260,22 @@ func (a *Board) Junction(d Device) float64 {
 func (d Device) IsTransistor() bool { return d.kind == isBJT }
 
 // IsResistor says whether a device is a resistor.
-func (d Device) IsResistor() bool { return d.kind == isResistor }
+func (d Device) IsResistor() bool { return d.kind == isResistor || d.kind == isSetResistor }
+
+// Family is what a device is in the codes of checks: "transistor" (bipolar or
+// MOSFET), "regulator", "module", or empty for what has no rating of its own.
+func (d Device) Family() string {
+	switch d.kind {
+	case isBJT, isFET:
+		return "transistor"
+	case isRegulator:
+		return "regulator"
+	case isModule:
+		return "module"
+	default:
+		return ""
+	}
+}
 
 // IsLED says whether a device is an LED.
 func (d Device) IsLED() bool { return d.kind == isLED }
@@ -233,6 +295,10 @@ func (a *Board) Current(d Device) float64 {
 
 // SetSense changes the resistor that measures the current, in ohms.
 func (a *Assembly) SetSense(ohms float64) {
+	if a.setOhms != nil {
+		a.setOhms(ohms)
+		return
+	}
 	a.Net.SetOhms(circuit.ResistorID(a.Devices[a.SenseAt].id), ohms)
 }
 
@@ -260,10 +326,11 @@ func newBoard() Board {
 func newAssembly(leds []LED) *Assembly {
 	a := &Assembly{
 		Board: newBoard(), LEDs: leds, Holder: -1, SenseAt: -1,
-		Control: circuit.None, Base: circuit.None, Sense: circuit.None, Rail: circuit.None,
+		Control: circuit.None, Base: circuit.None, Sense: circuit.None, Rail: circuit.None, Gate: circuit.None,
 	}
 	c := a.Net
 	a.Tail = c.Node("tail")
+	a.tail = a.Tail
 	models := make([]device.LED, len(leds))
 	counts := make([]int, len(leds))
 	for k, led := range leds {
@@ -342,3 +409,7 @@ func roleName(role string) string {
 	}
 	return string(b)
 }
+
+// atBase is the edge of a transistor's active region: its collector at its
+// base.
+func (a *Assembly) atBase() float64 { return a.Net.Voltage(a.Base) }

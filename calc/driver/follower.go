@@ -22,6 +22,7 @@ func FollowerSink(leds []LED, f Follower) *Assembly {
 	a.transistor("follower_transistor", circuit.Ground, a.Control, a.Base, f.PNP, true)
 	a.SenseAt = a.resistor("sense_resistor", a.Sense, circuit.Ground, f.Sense)
 	a.resistor("pullup_resistor", a.Feed, a.Base, f.Pullup)
+	a.Edge = a.atBase
 	a.start = func(feed float64) {
 		set := f.Control.setting(feed)
 		base := min(set+0.65, max(feed-0.1, 0))

@@ -21,6 +21,7 @@ func TwoTransistor(leds []LED, l Limiter) *Assembly {
 	a.transistor("sensor_transistor", a.Base, a.Sense, circuit.Ground, l.Sensor, false)
 	a.SenseAt = a.resistor("sense_resistor", a.Sense, circuit.Ground, l.Sense)
 	a.resistor("bias_resistor", a.Feed, a.Base, l.Bias)
+	a.Edge = a.atBase
 	a.start = func(feed float64) {
 		c.Guess(a.Base, min(1.3, feed))
 		c.Guess(a.Sense, min(0.65, feed/2))

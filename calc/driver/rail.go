@@ -22,6 +22,7 @@ func RailSink(leds []LED, r OnRail) *Assembly {
 	}
 	a.Holder = a.transistor("sink_transistor", a.Tail, a.Base, a.Sense, r.NPN, false)
 	a.SenseAt = a.resistor("sense_resistor", a.Sense, circuit.Ground, r.Sense)
+	a.Edge = a.atBase
 	a.start = func(feed float64) {
 		rail := c.Voltage(a.Rail)
 		c.Guess(a.Base, rail)

@@ -20,6 +20,7 @@ func ReferenceSink(leds []LED, f Fixed) *Assembly {
 	a.SenseAt = a.resistor("sense_resistor", a.Sense, circuit.Ground, f.Sense)
 	a.resistor("bias_resistor", a.Feed, a.Base, f.Bias)
 	a.reference(a.Base, f.Reference)
+	a.Edge = a.atBase
 	a.start = func(feed float64) {
 		base := min(f.Reference.Volts.Typ, feed)
 		c.Guess(a.Base, base)
