@@ -162,8 +162,24 @@ func (l *line) turnTo(turn []float64) {
 
 // extremes finds the worst case of every figure over the string's own knobs,
 // the supply and the ambient. A corner in which a part runs away thermally is
-// kept as that and left out of the figures.
+// kept as that and left out of the figures; where the typical figures
+// themselves would be left out, the string is solved as if it stayed cold.
 func (l *line) extremes(r reach) (worst, error) {
+	w, err := l.search(r)
+	if err != nil || w.runaway == nil || !(math.IsNaN(w.Typ[figCurrent]) || math.IsNaN(w.Typ[figHeadroom])) {
+		return w, err
+	}
+	runaway := w.runaway
+	l.Net.Isothermal()
+	l.Net.Restart()
+	l.started = false
+	w, err = l.search(r)
+	w.runaway = runaway
+	return w, err
+}
+
+// search is extremes for the string's heat as it stands.
+func (l *line) search(r reach) (worst, error) {
 	w := worst{fluxKnown: true}
 	var err error
 	w.Extremes, err = spread.Find(l.turns(), l.figures(), func(turn, out []float64) error {
@@ -188,6 +204,7 @@ func (l *line) extremes(r reach) (worst, error) {
 		}
 		left, err := l.headroom(c.volts, c.ohms)
 		if isRunaway(err) {
+			w.runaway = err
 			return nil
 		}
 		out[0] = left.headroom

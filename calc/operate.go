@@ -28,6 +28,12 @@ const (
 	treePatience = 60
 	// airRest is the step in kelvin at which heat and a can's air agree.
 	airRest = 1e-5
+	// fullPatience is how often the full current and its drop are solved in
+	// turn.
+	fullPatience = 30
+	// leastCurrent is the current in amperes below which a driver carries
+	// nothing.
+	leastCurrent = 1e-9
 	// baseRest is how near in volts to the base a tail counts as held at it:
 	// there the current hardly moves with it.
 	baseRest = 5e-3
@@ -91,7 +97,6 @@ func (p *plant) heatInside() float64 {
 func (p *plant) settle(volts, air float64) error {
 	for _, r := range p.rails {
 		r.Net.SetAir(air)
-		r.Net.Draw(r.Out, 0)
 		if err := r.feedAt(volts); err != nil {
 			return err
 		}
@@ -265,7 +270,8 @@ func (l *line) headroom(volts, ohms float64) (leftOver, error) {
 	if !short {
 		l.FeedAt(r.feed)
 	}
-	for range treePatience {
+	settled := false
+	for range fullPatience {
 		net.Hold(l.Tail, base)
 		if short {
 			// The full current does not flow, so neither does its drop.
@@ -275,24 +281,43 @@ func (l *line) headroom(volts, ohms float64) (leftOver, error) {
 		} else if err := net.Solve(); err != nil {
 			return r, &Unsolved{l.spec.Label, err}
 		}
-		full := net.HeldCurrent(l.Tail)
-		edge := l.Edge()
+		full, edge := net.HeldCurrent(l.Tail), l.Edge()
 		moved := math.Abs(edge - base)
 		if short {
 			moved += ohms * math.Abs(full-r.full)
 		}
 		r.full, base = full, edge
-		if moved < baseRest {
+		if settled = moved < baseRest; settled {
 			break
 		}
 	}
+	if !settled {
+		// The cable could not carry the full current at any voltage: what is
+		// left over is then told for the feed as it stands.
+		l.FeedAt(r.feed)
+		net.Hold(l.Tail, base)
+		if err := net.Solve(); err != nil {
+			return r, &Unsolved{l.spec.Label, err}
+		}
+		r.full = net.HeldCurrent(l.Tail)
+	}
 	r.feed = net.Voltage(l.Feed)
+	r.full = math.Max(r.full, 0)
 	available := r.feed - net.StackVoltage(l.Stack, r.full)
+	if r.full < leastCurrent {
+		// A driver that is to carry nothing needs nothing but its edge.
+		r.need, r.sense = base, l.senseVolts()
+		r.headroom = available - r.need
+		return r, nil
+	}
 	l.FeedAt(r.feed)
 	if err := l.findNeed(&r, base); err != nil {
 		return r, err
 	}
 	r.headroom = available - r.need
+	if math.IsNaN(r.headroom) || math.IsInf(r.headroom, 0) {
+		return r, &Unsolved{l.spec.Label, errors.New("what is left over cannot be told")}
+	}
 	return r, nil
 }
 

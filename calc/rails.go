@@ -67,7 +67,6 @@ func (r *railLine) name() string { return "rail " + r.spec.ID }
 // feedAt puts the rail's own feed at a voltage in volts.
 func (r *railLine) feedAt(feed float64) error {
 	if !r.started {
-		r.Net.Release(r.Out, 0)
 		r.Start(feed)
 		r.FeedAt(feed)
 		if err := r.Net.Solve(); err != nil {
@@ -80,43 +79,35 @@ func (r *railLine) feedAt(feed float64) error {
 	return nil
 }
 
-// balance finds the rail's voltage at which what rail and strings take adds up
-// to nothing: Newton's method kept inside a bracket, since every string takes
-// more from a higher rail.
+// balance brings rail and strings together: each string is solved at the
+// rail's voltage and stands in as a straight line of what it takes more for a
+// volt more, with which the rail is solved again. The rail itself stays free:
+// held at a voltage that is not its own, a follower's heat could run away
+// where in the whole it does not.
 func (r *railLine) balance() error {
-	low, high := 0.0, math.Max(r.Net.Voltage(r.Feed), 0)
-	for _, l := range r.lines {
-		high = math.Max(high, l.Net.Voltage(l.Feed))
-	}
-	v := math.Min(r.volts, high)
-	for range treePatience {
-		r.Net.Hold(r.Out, v)
-		if err := r.Net.Solve(); err != nil {
-			return &Unsolved{r.name(), err}
-		}
-		takes, slope := r.Net.HeldCurrent(r.Out), r.Net.HeldSlope(r.Out)
+	defer r.Load(0, 0)
+	for k := range treePatience {
+		takes, slope := 0.0, 0.0
 		for _, l := range r.lines {
-			l.Net.Hold(l.Rail, v)
+			l.Net.Hold(l.Rail, r.volts)
 			if err := l.solve(); err != nil {
 				return err
 			}
 			takes += l.quantity * l.Net.HeldCurrent(l.Rail)
-			slope += l.quantity * l.Net.HeldSlope(l.Rail)
+			slope += l.quantity * math.Max(0, l.Net.HeldSlope(l.Rail))
 		}
-		if takes > 0 {
-			high = v
-		} else {
-			low = v
+		r.Load(takes-slope*r.volts, slope)
+		if err := r.Net.Solve(); err != nil {
+			return &Unsolved{r.name(), err}
 		}
-		next := v - takes/slope
-		if !(next >= low && next <= high) {
-			next = (low + high) / 2
-		}
-		if math.Abs(next-v) < treeRest {
-			r.volts = v
+		step := r.Net.Voltage(r.Out) - r.volts
+		if math.Abs(step) < treeRest {
 			return nil
 		}
-		v = next
+		if k > treePatience/2 {
+			step /= 2
+		}
+		r.volts += step
 	}
 	return &Unsolved{r.name(), errors.New("rail and strings do not settle")}
 }
@@ -157,10 +148,7 @@ func (r *railLine) figures() int { return railDevices + 2*len(r.Devices) }
 
 // solveFree solves the rail with its voltage free and a load in amperes.
 func (r *railLine) solveFree(load, volts, ohms, air float64) error {
-	if r.Net.IsHeld(r.Out) {
-		r.Net.Release(r.Out, r.volts)
-	}
-	r.Net.Draw(r.Out, load)
+	r.Load(load, 0)
 	r.Net.SetAir(air)
 	if ohms == 0 {
 		r.FeedAt(volts)

@@ -53,9 +53,6 @@ const (
 // lost.
 var referenceCount = map[string]int{"plain": 15, "hotcold": 6, "thermal": 6, "runs": 9, "rail": 6}
 
-// unsolvedModes are those whose drivers this version cannot solve.
-var unsolvedModes = map[string]string{"rail": "base rails are refused by name until they can be solved"}
-
 func TestOperatingPointsAgreeWithSimulator(t *testing.T) {
 	files, err := filepath.Glob(filepath.Join("..", "testdata", "reference", "operating-points", "*.json"))
 	if err != nil {
@@ -73,9 +70,6 @@ func TestOperatingPointsAgreeWithSimulator(t *testing.T) {
 		}
 		seen[c.Mode]++
 		t.Run(strings.TrimSuffix(filepath.Base(file), ".json"), func(t *testing.T) {
-			if reason := unsolvedModes[c.Mode]; reason != "" {
-				t.Skip(reason)
-			}
 			b, err := calc.Read(c.Build)
 			if err != nil {
 				t.Fatal(err)

@@ -193,7 +193,7 @@ func (l *line) alone(b Build) Build {
 	s := b.Strings[l.index]
 	s.FedBy = ""
 	b.Strings = []String{s}
-	b.Runs = nil
+	b.Runs, b.Rails = nil, nil
 	b.Supply.Voltage = l.reach.volts
 	b.Supply.SourceResistance = l.path / l.quantity
 	b.Ambient = l.reach.inside

@@ -101,9 +101,6 @@ func (c *Circuit) Release(n Node, guess float64) {
 	c.v[n] = guess
 }
 
-// IsHeld says whether a node stands at a given voltage.
-func (c *Circuit) IsHeld(n Node) bool { return c.held[n] }
-
 // Guess sets where the search for a node's voltage starts, in volts.
 func (c *Circuit) Guess(n Node, volts float64) {
 	if !c.held[n] {

@@ -32,18 +32,37 @@ func RailSink(leds []LED, r OnRail) *Assembly {
 	return a
 }
 
-// Rail is a base rail as a circuit: Out is the rail itself, free or held.
+// Rail is a base rail as a circuit: Out is the rail itself.
 type Rail struct {
 	Board
-	Out circuit.Node
+	Out  circuit.Node
+	line circuit.ResistorID
+}
+
+// newRail makes a rail's feed and its node, with what stands for its strings.
+func newRail() *Rail {
+	r := &Rail{Board: newBoard()}
+	r.Out = r.Net.Node("rail")
+	r.line = r.Net.Resistor(r.Out, circuit.Ground, 1)
+	r.Net.Switch(r.line, false)
+	return r
+}
+
+// Load draws from the rail a current in amperes at 0 V, and slope in siemens
+// more for every volt.
+func (r *Rail) Load(amperes, slope float64) {
+	r.Net.Draw(r.Out, amperes)
+	r.Net.Switch(r.line, slope > 0)
+	if slope > 0 {
+		r.Net.SetOhms(r.line, 1/slope)
+	}
 }
 
 // FollowerRail wires a rail that is the emitter of a PNP follower, pulled up
 // from its feed; it stands one VBE above the control voltage.
 func FollowerRail(control Control, pnp Transistor, pullup Resistance) *Rail {
-	r := &Rail{Board: newBoard()}
+	r := newRail()
 	c := r.Net
-	r.Out = c.Node("rail")
 	base := r.control(control)
 	r.transistor("follower_transistor", circuit.Ground, base, r.Out, pnp, true)
 	r.resistor("pullup_resistor", r.Feed, r.Out, pullup)
@@ -57,9 +76,8 @@ func FollowerRail(control Control, pnp Transistor, pullup Resistance) *Rail {
 
 // ReferenceRail wires a rail that a reference holds, fed by a bias resistor.
 func ReferenceRail(reference Reference, bias Resistance) *Rail {
-	r := &Rail{Board: newBoard()}
+	r := newRail()
 	c := r.Net
-	r.Out = c.Node("rail")
 	r.resistor("bias_resistor", r.Feed, r.Out, bias)
 	r.reference(r.Out, reference)
 	r.start = func(feed float64) { c.Guess(r.Out, min(reference.Volts.Typ, feed)) }
@@ -69,10 +87,9 @@ func ReferenceRail(reference Reference, bias Resistance) *Rail {
 // BufferedRail wires a rail that is the emitter of an NPN follower whose base
 // a reference holds; the pull-down takes what the strings do not.
 func BufferedRail(reference Reference, bias Resistance, npn Transistor, pulldown Resistance) *Rail {
-	r := &Rail{Board: newBoard()}
+	r := newRail()
 	c := r.Net
 	held := c.Node("reference")
-	r.Out = c.Node("rail")
 	r.resistor("bias_resistor", r.Feed, held, bias)
 	r.reference(held, reference)
 	r.transistor("follower_transistor", r.Feed, held, r.Out, npn, false)
