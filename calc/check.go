@@ -153,8 +153,9 @@ func (p *plant) worstCases(r *Report, inside float64) error {
 			return err
 		}
 		var least, most float64
+		makes := catalogue{}
 		for i, l := range p.strings {
-			if l.worst, err = l.extremes(reaches[i]); err != nil {
+			if l.worst, err = makes.extremes(p, l, reaches[i]); err != nil {
 				return err
 			}
 			l.reach = reaches[i]

@@ -99,6 +99,7 @@ func (l *line) driveResistor() int {
 // worst is a string's figures with their worst cases.
 type worst struct {
 	*spread.Extremes
+	left      *spread.Extremes // the search for what is left over
 	fluxKnown bool
 	runaway   error // a corner without a stable temperature
 }
@@ -164,8 +165,8 @@ func (l *line) turnTo(turn []float64) {
 // the supply and the ambient. A corner in which a part runs away thermally is
 // kept as that and left out of the figures; where the typical figures
 // themselves would be left out, the string is solved as if it stayed cold.
-func (l *line) extremes(r reach) (worst, error) {
-	w, err := l.search(r)
+func (l *line) extremes(r reach, like *worst) (worst, error) {
+	w, err := l.search(r, like)
 	if err != nil || w.runaway == nil || !(math.IsNaN(w.Typ[figCurrent]) || math.IsNaN(w.Typ[figHeadroom])) {
 		return w, err
 	}
@@ -173,16 +174,28 @@ func (l *line) extremes(r reach) (worst, error) {
 	l.Net.Isothermal()
 	l.Net.Restart()
 	l.started = false
-	w, err = l.search(r)
+	w, err = l.search(r, nil)
 	w.runaway = runaway
 	return w, err
 }
 
-// search is extremes for the string's heat as it stands.
-func (l *line) search(r reach) (worst, error) {
+// search is extremes for the string's heat as it stands. With like, the worst
+// case of a string of the same make in the same state, only the corners that
+// mattered there are solved.
+func (l *line) search(r reach, like *worst) (worst, error) {
 	w := worst{fluxKnown: true}
+	find := func(like *spread.Extremes, figures int, eval spread.Eval) (*spread.Extremes, error) {
+		if like != nil {
+			return spread.Replay(like, eval)
+		}
+		return spread.Find(l.turns(), figures, eval)
+	}
+	var likeAll, likeLeft *spread.Extremes
+	if like != nil {
+		likeAll, likeLeft = like.Extremes, like.left
+	}
 	var err error
-	w.Extremes, err = spread.Find(l.turns(), l.figures(), func(turn, out []float64) error {
+	w.Extremes, err = find(likeAll, l.figures(), func(turn, out []float64) error {
 		_, ok, err := l.corner(&w, r, turn)
 		if !ok {
 			fillNaN(out)
@@ -196,7 +209,7 @@ func (l *line) search(r reach) (worst, error) {
 		return w, err
 	}
 	// What is left over costs several solutions; it gets a search of its own.
-	left, err := spread.Find(l.turns(), 1, func(turn, out []float64) error {
+	left, err := find(likeLeft, 1, func(turn, out []float64) error {
 		c, ok, err := l.corner(&w, r, turn)
 		fillNaN(out)
 		if !ok {
@@ -215,15 +228,16 @@ func (l *line) search(r reach) (worst, error) {
 	}
 	w.Min[figHeadroom], w.Typ[figHeadroom], w.Max[figHeadroom] = left.Min[0], left.Typ[0], left.Max[0]
 	w.Lowest[figHeadroom], w.Highest[figHeadroom] = left.Lowest[0], left.Highest[0]
+	w.left = left
 	l.toTypical()
 	return w, nil
 }
 
 // drawExtremes is extremes for what the string takes from the feed, and from
 // its rail, alone.
-func (l *line) drawExtremes(r reach) (*spread.Extremes, error) {
+func (l *line) drawExtremes(r reach, like *spread.Extremes) (*spread.Extremes, error) {
 	var w worst
-	x, err := spread.Find(l.turns(), 2, func(turn, out []float64) error {
+	eval := func(turn, out []float64) error {
 		_, ok, err := l.corner(&w, r, turn)
 		fillNaN(out)
 		if ok {
@@ -233,9 +247,12 @@ func (l *line) drawExtremes(r reach) (*spread.Extremes, error) {
 			}
 		}
 		return err
-	})
-	l.toTypical()
-	return x, err
+	}
+	defer l.toTypical()
+	if like != nil {
+		return spread.Replay(like, eval)
+	}
+	return spread.Find(l.turns(), 2, eval)
 }
 
 // corner solves the string with its knobs, supply and ambient turned; ok is
@@ -306,10 +323,11 @@ func (p *plant) reaches(air Spread) ([]reach, error) {
 		railReach[k].volts.Typ = r.Net.Voltage(r.Feed) + r.path*r.Draw()
 	}
 	draws := make([]*spread.Extremes, len(p.strings))
+	seen := drawCatalogue{}
 	for i, l := range p.strings {
 		r := out[i]
 		r.volts = Spread{Min: b.Supply.Voltage.Min, Typ: b.Supply.Voltage.Typ, Max: b.Supply.Voltage.Max}
-		x, err := l.drawExtremes(r)
+		x, err := seen.extremes(p, l, r)
 		if err != nil {
 			return nil, err
 		}
@@ -364,12 +382,13 @@ func (p *plant) reaches(air Spread) ([]reach, error) {
 // railReaches finds how far each rail goes, from the base currents that its
 // strings take at most and at least.
 func (p *plant) railReaches(strings []reach, whole reach) error {
+	draws := drawCatalogue{}
 	for _, r := range p.rails {
 		typ := Exactly(r.volts)
 		r.reach = [3]Spread{typ, typ, typ}
 		r.loads = Spread{}
 		for _, l := range r.lines {
-			x, err := l.drawExtremes(strings[l.index])
+			x, err := draws.extremes(p, l, strings[l.index])
 			if err != nil {
 				return err
 			}

@@ -15,6 +15,8 @@ type Extremes struct {
 	// where it does not matter.
 	Lowest, Highest [][]int8
 
+	distinct [][]int8
+
 	effect [][]float64 // by figure and knob: most less least, that knob alone
 	turn   []float64
 	tried  map[string][]float64
@@ -81,6 +83,50 @@ func Find(knobs, figures int, eval Eval) (*Extremes, error) {
 		}
 	}
 	return x, nil
+}
+
+// Replay returns the worst case of the same figures over the same knobs for a
+// neighbour of what like was found for: only the typical point and the corners
+// that mattered there are solved. The caller judges whether it is a neighbour.
+func Replay(like *Extremes, eval Eval) (*Extremes, error) {
+	knobs, figures := len(like.turn), len(like.Typ)
+	x := &Extremes{
+		Min: make([]float64, figures), Typ: make([]float64, figures), Max: make([]float64, figures),
+		Lowest: make([][]int8, figures), Highest: make([][]int8, figures),
+		turn: make([]float64, knobs), out: make([]float64, figures),
+		tried: map[string][]float64{}, eval: eval,
+	}
+	if err := x.eval(x.turn, x.out); err != nil {
+		return nil, err
+	}
+	copy(x.Min, x.out)
+	copy(x.Typ, x.out)
+	copy(x.Max, x.out)
+	typical := make([]int8, knobs)
+	for f := range figures {
+		x.Lowest[f], x.Highest[f] = typical, typical
+	}
+	for _, corner := range like.corners() {
+		if err := x.try(corner); err != nil {
+			return nil, err
+		}
+	}
+	return x, nil
+}
+
+// corners lists every corner that is the worst of some figure, once.
+func (x *Extremes) corners() [][]int8 {
+	if x.distinct != nil {
+		return x.distinct
+	}
+	for f := range x.Typ {
+		for _, corner := range [][]int8{x.Lowest[f], x.Highest[f]} {
+			if !slices.ContainsFunc(x.distinct, func(other []int8) bool { return slices.Equal(other, corner) }) {
+				x.distinct = append(x.distinct, corner)
+			}
+		}
+	}
+	return x.distinct
 }
 
 // climb tries a figure's corner, and then turns over the knobs whose sign is
