@@ -22,7 +22,8 @@ type RevisionInfo struct {
 
 // line is the row of states that undo and redo walk along, as an editor has
 // it: a place in it and its two ends. Each state is held by one revision, which
-// bears the state's step.
+// bears the state's step. It is never longer than what is remembered, since only
+// an edit makes it longer and cuts it at the far end.
 type line struct {
 	at, first, last int64
 }
@@ -35,12 +36,9 @@ func (l line) edited(remember int64) line {
 
 // moved is the line after a step back (by -1) or forward (by 1) to a state that
 // it holds already; false when it ends there.
-func (l line) moved(by, remember int64) (line, bool) {
-	at := l.at + by
-	if at < l.first || at > l.last {
-		return l, false
-	}
-	return line{at: at, first: max(l.first, at-remember+1), last: min(l.last, at+remember-1)}, true
+func (l line) moved(by int64) (line, bool) {
+	l.at += by
+	return l, l.first <= l.at && l.at <= l.last
 }
 
 // revision is one about to be written.
@@ -74,7 +72,7 @@ func (s *Store) move(ctx context.Context, id, ifRevision int64, act string, by i
 		if err != nil {
 			return Build{}, err
 		}
-		there, ok := here.moved(by, s.remember)
+		there, ok := here.moved(by)
 		if !ok {
 			return Build{}, ErrNothing
 		}

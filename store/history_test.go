@@ -34,6 +34,7 @@ func TestUndoAndRedo(t *testing.T) {
 		{"all undone and all redone", "1 2 3 u u u r r r", "3", true, false},
 		{"there and back twice", "1 2 u u r r u u r", "1", true, true},
 		{"an edit after an undo ends redo", "1 2 u 3 r", "nothing", true, false},
+		{"an edit after two undos ends redo", "1 2 3 u u 4 r", "nothing", true, false},
 		{"an edit after an undo stands on what was undone to", "1 2 u 3 u", "1", true, true},
 		{"an undo after that goes round the dead branch", "1 2 u 3 u u", "0", false, true},
 		{"the new branch is redone, not the dead one", "1 2 u 3 u u r r", "3", true, false},

@@ -33,9 +33,6 @@ func (e *editor) revision() int64 { return int64(len(e.saved)) }
 // too far away.
 func (e *editor) land() {
 	e.saved = append(e.saved, e.states[e.at])
-	if beyond := e.at + e.remember; beyond < len(e.states) {
-		e.states = e.states[:beyond]
-	}
 	if before := e.at - (e.remember - 1); before > 0 {
 		e.states = e.states[before:]
 		e.at -= before
