@@ -102,6 +102,30 @@ func TestCheckTellsPeopleWhatIsWrongAndWhatCuresIt(t *testing.T) {
 	}
 }
 
+// figuresCase is a finding's figures as people are told them.
+type figuresCase struct {
+	name  string
+	found calc.Finding
+	want  string
+}
+
+func TestFiguresAreWrittenWithTheirLimit(t *testing.T) {
+	number := func(v float64) *float64 { return &v }
+	for _, c := range []figuresCase{
+		{"a least", calc.Finding{Value: number(-0.3), Limit: number(0.3), Unit: "V", Least: true}, " −0.300 V, at least 0.300 V"},
+		{"a most", calc.Finding{Value: number(0.021), Limit: number(0.02), Unit: "A"}, " 21.0 mA, at most 20.0 mA"},
+		{"percents are counted", calc.Finding{Value: number(12.5), Limit: number(80), Unit: "%"}, " 12.5 %, at most 80.0 %"},
+		{"value not known", calc.Finding{Limit: number(150), Unit: "°C"}, ", at most 150 °C"},
+		{"limit not known", calc.Finding{Value: number(0.4), Unit: "W"}, " 0.400 W"},
+		{"neither", calc.Finding{Unit: "V"}, ""},
+	} {
+		got := strings.ReplaceAll(figures(c.found), "\u00a0", " ")
+		if got != c.want {
+			t.Errorf("%s: %q, want %q", c.name, got, c.want)
+		}
+	}
+}
+
 func TestCheckReadsStandardInput(t *testing.T) {
 	code, stdout, stderr := commandLine(t, shelfLight(t), "check", "-")
 	if code != 0 || !strings.HasPrefix(stdout, "-: ") {

@@ -105,9 +105,15 @@ func TestPatchesHaveLimits(t *testing.T) {
 		t.Errorf("doubling twelve times: %.200v", err)
 	}
 
+	large := []byte(`{"a":"` + strings.Repeat("x", apiBody/2) + `"}`)
+	_, err = applyPatch(large, []byte(`[{"op":"copy","from":"/a","path":"/b"}]`))
+	var told *refusal
+	if !errors.As(err, &told) || told.status != http.StatusRequestEntityTooLarge {
+		t.Errorf("a document beyond 8 MiB: %.200v", err)
+	}
+
 	many := `[` + strings.Repeat(`{"op":"test","path":"","value":{}},`, maxOperations) + `{"op":"test","path":"","value":{}}]`
 	_, err = applyPatch([]byte(`{}`), []byte(many))
-	var told *refusal
 	if !errors.As(err, &told) || told.status != http.StatusBadRequest {
 		t.Errorf("%d operations: %.200v", maxOperations+1, err)
 	}

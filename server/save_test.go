@@ -8,6 +8,8 @@ import (
 	"strings"
 	"testing"
 
+	"github.com/santhosh-tekuri/jsonschema/v6"
+
 	"lanternbook/calc"
 	"lanternbook/store"
 )
@@ -121,4 +123,41 @@ func TestAnEditThatMakesABuildUnsolvableIsKept(t *testing.T) {
 	if code, _, stderr := commandLine(t, runaway(t), "check", "-"); code != 2 || !strings.Contains(stderr, "string A") {
 		t.Errorf("check: exit %d, %s", code, stderr)
 	}
+}
+
+func TestAnEditOfAnEarlierRevisionIsStaleWhateverItSays(t *testing.T) {
+	p := openShop(t)
+	kept, _, _, err := p.s.create(t.Context(), []byte(shelfLight(t)))
+	if err != nil {
+		t.Fatal(err)
+	}
+	if _, _, _, err := p.s.change(t.Context(), kept.ID, kept.Revision, []byte(`[{"op":"add","path":"/notes","value":"once"}]`)); err != nil {
+		t.Fatal(err)
+	}
+	for _, patch := range []string{
+		`[{"op":"add","path":"/notes","value":"twice"}]`, // would be kept
+		`[]`,                               // would change nothing
+		`[{"op":"remove","path":"/runs"}]`, // would not fit
+	} {
+		_, _, _, err := p.s.change(t.Context(), kept.ID, kept.Revision, []byte(patch))
+		var stale *store.Stale
+		if !errors.As(err, &stale) || stale.Have != kept.Revision+1 {
+			t.Errorf("%s: %v, want stale at revision %d", patch, err, kept.Revision+1)
+		}
+	}
+}
+
+func TestWhatTheSchemaRefusesIsNotKept(t *testing.T) {
+	p := openShop(t)
+	published := compiledBuildSchema
+	defer func() { compiledBuildSchema = published }()
+	compiledBuildSchema = func() *jsonschema.Schema { // one that knows no title, as a published one that lags behind would
+		compiler := jsonschema.NewCompiler()
+		if err := compiler.AddResource("strict.json", map[string]any{"properties": map[string]any{"title": false}}); err != nil {
+			t.Fatal(err)
+		}
+		return compiler.MustCompile("strict.json")
+	}
+	a := p.do(http.MethodPost, "/api/builds", shelfLight(t), "Content-Type", asJSON)
+	a.wantProblem(t, http.StatusUnprocessableEntity, "/title")
 }
