@@ -219,15 +219,28 @@ func (e *buildEdit) command(ctx context.Context) error {
 		return err
 	default:
 		e.texts, e.page.faults = move.rename(e.texts), move.rename(e.page.faults)
-		if at, stays := move("/strings/" + strconv.Itoa(e.page.open) + "/label"); stays {
-			e.page.open, _, _ = inList(at, "/strings")
-		}
-		if strings.HasPrefix(e.button, "string-add") {
-			e.page.open = len(e.page.b.Strings) - 1
-		}
+		e.page.open = openAfter(e.button, e.page.open, move, len(e.page.b.Strings))
 	}
 	e.anew = true
 	return nil
+}
+
+// openAfter is the string whose fields stand open after a command: the new one,
+// or the one before it wherever it went.
+func openAfter(button string, open int, move renamed, count int) int {
+	verb, at, _ := strings.Cut(button, " ")
+	switch verb {
+	case "string-add":
+		return count - 1
+	case "string-copy":
+		if row, _, in := inList(at+"/", "/strings"); in {
+			return row + 1
+		}
+	}
+	if name, stays := move("/strings/" + strconv.Itoa(open) + "/label"); stays {
+		open, _, _ = inList(name, "/strings")
+	}
+	return open
 }
 
 // travel goes one revision back or forth.

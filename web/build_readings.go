@@ -24,6 +24,7 @@ type ReadingRow struct {
 	Usual string
 	High  string
 	Limit string // "" where none is known or none applies
+	Words string // in the place of figures
 }
 
 // PointView is a place to put a meter's tip, and what it reads there.
@@ -52,7 +53,7 @@ func stringReading(b calc.Build, r calc.Report, i int) ReadingView {
 	if s.LuminousFlux != nil {
 		v.Rows = append(v.Rows, ranged("light", *s.LuminousFlux, quantity.Lumen, 3))
 	} else {
-		v.Rows = append(v.Rows, ReadingRow{Name: "light", Usual: "not known: an LED says no flux"})
+		v.Rows = append(v.Rows, ReadingRow{Name: "light", Words: "not known: an LED says no flux"})
 	}
 	v.Rows = append(v.Rows, ranged("across the LEDs", s.LEDVoltage, quantity.Volt, 3), leftRow(b, s))
 	for _, d := range s.Devices {

@@ -120,7 +120,7 @@ func checkView(i int, f calc.Finding, entries []*Entry) CheckView {
 		v.Value = findingFigure(*f.Value, f.Unit)
 	}
 	if f.Limit != nil {
-		v.Limit = findingFigure(*f.Limit, f.Unit)
+		v.Limit = limitFigure(*f.Limit, f.Unit)
 		switch {
 		case f.Code == "wanted":
 			v.Limit += " wanted"
@@ -159,6 +159,19 @@ func findingFigure(v float64, unit string) string {
 		return degrees(v)
 	}
 	return quantity.Format(v, unit, 3)
+}
+
+// limitFigure writes a limit: a round one as it was set, a computed one to
+// three digits.
+func limitFigure(v float64, unit string) string {
+	if unit == "%" || unit == "°C" {
+		return findingFigure(v, unit)
+	}
+	set, computed := quantity.Text(v, unit), quantity.Format(v, unit, 3)
+	if len(set) <= len(computed) {
+		return set
+	}
+	return computed
 }
 
 // bar draws the value against its limit; nil where one of them is not known or

@@ -125,7 +125,7 @@ func supplyWords(v calc.Spread, feed float64) string {
 func column(b calc.Build, i int, r calc.StringReport, c calc.Column, s Scale, f Frame) ColumnView {
 	at := "/strings/" + strconv.Itoa(i)
 	v := ColumnView{
-		Frame: f, Scale: s, Label: r.Label, Times: "× " + strconv.Itoa(r.Quantity), Href: "#string-" + strconv.Itoa(i),
+		Frame: f, Scale: s, Label: r.Label, Times: "×\u00a0" + strconv.Itoa(r.Quantity), Href: "#string-" + strconv.Itoa(i),
 		Current: quantity.Format(c.Current, quantity.Amp, 3),
 		Heat:    quantity.Format(c.Heat, quantity.Watt, 2) + " in " + holder(b, i),
 	}

@@ -21,8 +21,8 @@ type Frame struct {
 
 // The frames in which there is room beside the blocks.
 var (
-	WideFrame   = frame("wide", 228, 26, 118)
-	MiddleFrame = frame("middle", 178, 22, 92)
+	WideFrame   = frame("wide", 228, 24, 108)
+	MiddleFrame = frame("middle", 181, 20, 80)
 )
 
 func frame(name string, width, left, block Px) Frame {
@@ -150,7 +150,10 @@ func block(p piece, v float64, times string, from float64, s Scale, f Frame) Blo
 		figure = times + figureVolts(v/float64(p.count))
 	}
 	middle := b.Y + b.Tall/2
-	room := f.Block - 2*wordsPad
+	room := f.Block - 2*f.pad()
+	if p.kind == "led" && wordsWide(p.name) > room { // "cool white" is at least "white"
+		p.name = p.name[strings.LastIndexByte(p.name, ' ')+1:]
+	}
 	switch {
 	case b.Tall >= textTall && wordsWide(p.name)+figureWide(figure)+wordsGap <= room:
 		b.Name, b.Figure = p.name, figure
@@ -192,7 +195,6 @@ func spreadNotes(notes []Note, f Frame, supply Px) {
 
 // How much room words take inside a block.
 const (
-	wordsPad     Px = 7
 	wordsGap     Px = 6
 	wordsSize    Px = 14  // of names
 	digitAdvance Px = 7.5 // of figures, 0.6 em at 12.5 px exactly
@@ -205,6 +207,14 @@ var advances = [...]Px{
 	20, 24, 35, 57, 60, 89, 63, 19, 26, 26, 40, 57, 24, 46, 24, 36, 56, 45, 52, 53, 53, 51, 55, 51, 55, 56, 24, 24, 57, 57, 57, 46,
 	94, 55, 55, 61, 61, 51, 49, 62, 63, 25, 25, 57, 46, 74, 63, 61, 53, 61, 58, 54, 52, 62, 57, 82, 54, 52, 52, 26, 36, 26, 49, 50,
 	22, 48, 51, 50, 52, 50, 36, 49, 53, 23, 23, 48, 23, 80, 53, 51, 51, 52, 35, 44, 38, 52, 48, 69, 47, 48, 45, 27, 25, 27, 57,
+}
+
+// pad is what is left free at both sides of the words.
+func (f Frame) pad() Px {
+	if f.Notes {
+		return 7
+	}
+	return 4
 }
 
 func wordsWide(s string) Px {

@@ -1044,9 +1044,9 @@ func columnBlock(f Frame, b Block) templ.Component {
 					return templ_7745c5c3_Err
 				}
 				var templ_7745c5c3_Var66 string
-				templ_7745c5c3_Var66, templ_7745c5c3_Err = templruntime.NewAttributeExpression((f.Left + wordsPad).String()).Resolve(ctx)
+				templ_7745c5c3_Var66, templ_7745c5c3_Err = templruntime.NewAttributeExpression((f.Left + f.pad()).String()).Resolve(ctx)
 				if templ_7745c5c3_Err != nil {
-					return templ.Error{Err: templ_7745c5c3_Err, FileName: `column.templ`, Line: 83, Col: 74}
+					return templ.Error{Err: templ_7745c5c3_Err, FileName: `column.templ`, Line: 83, Col: 73}
 				}
 				_, templ_7745c5c3_Err = templ_7745c5c3_Buffer.WriteString(templ_7745c5c3_Var66)
 				if templ_7745c5c3_Err != nil {
@@ -1059,7 +1059,7 @@ func columnBlock(f Frame, b Block) templ.Component {
 				var templ_7745c5c3_Var67 string
 				templ_7745c5c3_Var67, templ_7745c5c3_Err = templruntime.NewAttributeExpression(b.NameY.String()).Resolve(ctx)
 				if templ_7745c5c3_Err != nil {
-					return templ.Error{Err: templ_7745c5c3_Err, FileName: `column.templ`, Line: 83, Col: 97}
+					return templ.Error{Err: templ_7745c5c3_Err, FileName: `column.templ`, Line: 83, Col: 96}
 				}
 				_, templ_7745c5c3_Err = templ_7745c5c3_Buffer.WriteString(templ_7745c5c3_Var67)
 				if templ_7745c5c3_Err != nil {
@@ -1072,7 +1072,7 @@ func columnBlock(f Frame, b Block) templ.Component {
 				var templ_7745c5c3_Var68 string
 				templ_7745c5c3_Var68, templ_7745c5c3_Err = templruntime.NewAttributeExpression(b.Ink).Resolve(ctx)
 				if templ_7745c5c3_Err != nil {
-					return templ.Error{Err: templ_7745c5c3_Err, FileName: `column.templ`, Line: 83, Col: 112}
+					return templ.Error{Err: templ_7745c5c3_Err, FileName: `column.templ`, Line: 83, Col: 111}
 				}
 				_, templ_7745c5c3_Err = templ_7745c5c3_Buffer.WriteString(templ_7745c5c3_Var68)
 				if templ_7745c5c3_Err != nil {
@@ -1099,7 +1099,7 @@ func columnBlock(f Frame, b Block) templ.Component {
 			var templ_7745c5c3_Var69 string
 			templ_7745c5c3_Var69, templ_7745c5c3_Err = templ.JoinStringErrs(b.Name)
 			if templ_7745c5c3_Err != nil {
-				return templ.Error{Err: templ_7745c5c3_Err, FileName: `column.templ`, Line: 83, Col: 123}
+				return templ.Error{Err: templ_7745c5c3_Err, FileName: `column.templ`, Line: 83, Col: 122}
 			}
 			_, templ_7745c5c3_Err = templ_7745c5c3_Buffer.WriteString(templ.EscapeString(templ_7745c5c3_Var69))
 			if templ_7745c5c3_Err != nil {
@@ -1136,9 +1136,9 @@ func columnBlock(f Frame, b Block) templ.Component {
 					return templ_7745c5c3_Err
 				}
 				var templ_7745c5c3_Var72 string
-				templ_7745c5c3_Var72, templ_7745c5c3_Err = templruntime.NewAttributeExpression((f.Left + f.Block - wordsPad).String()).Resolve(ctx)
+				templ_7745c5c3_Var72, templ_7745c5c3_Err = templruntime.NewAttributeExpression((f.Left + f.Block - f.pad()).String()).Resolve(ctx)
 				if templ_7745c5c3_Err != nil {
-					return templ.Error{Err: templ_7745c5c3_Err, FileName: `column.templ`, Line: 84, Col: 86}
+					return templ.Error{Err: templ_7745c5c3_Err, FileName: `column.templ`, Line: 84, Col: 85}
 				}
 				_, templ_7745c5c3_Err = templ_7745c5c3_Buffer.WriteString(templ_7745c5c3_Var72)
 				if templ_7745c5c3_Err != nil {
@@ -1151,7 +1151,7 @@ func columnBlock(f Frame, b Block) templ.Component {
 				var templ_7745c5c3_Var73 string
 				templ_7745c5c3_Var73, templ_7745c5c3_Err = templruntime.NewAttributeExpression(b.FigY.String()).Resolve(ctx)
 				if templ_7745c5c3_Err != nil {
-					return templ.Error{Err: templ_7745c5c3_Err, FileName: `column.templ`, Line: 84, Col: 108}
+					return templ.Error{Err: templ_7745c5c3_Err, FileName: `column.templ`, Line: 84, Col: 107}
 				}
 				_, templ_7745c5c3_Err = templ_7745c5c3_Buffer.WriteString(templ_7745c5c3_Var73)
 				if templ_7745c5c3_Err != nil {
@@ -1164,7 +1164,7 @@ func columnBlock(f Frame, b Block) templ.Component {
 				var templ_7745c5c3_Var74 string
 				templ_7745c5c3_Var74, templ_7745c5c3_Err = templruntime.NewAttributeExpression(b.Ink).Resolve(ctx)
 				if templ_7745c5c3_Err != nil {
-					return templ.Error{Err: templ_7745c5c3_Err, FileName: `column.templ`, Line: 84, Col: 141}
+					return templ.Error{Err: templ_7745c5c3_Err, FileName: `column.templ`, Line: 84, Col: 140}
 				}
 				_, templ_7745c5c3_Err = templ_7745c5c3_Buffer.WriteString(templ_7745c5c3_Var74)
 				if templ_7745c5c3_Err != nil {
@@ -1191,7 +1191,7 @@ func columnBlock(f Frame, b Block) templ.Component {
 			var templ_7745c5c3_Var75 string
 			templ_7745c5c3_Var75, templ_7745c5c3_Err = templ.JoinStringErrs(b.Figure)
 			if templ_7745c5c3_Err != nil {
-				return templ.Error{Err: templ_7745c5c3_Err, FileName: `column.templ`, Line: 84, Col: 154}
+				return templ.Error{Err: templ_7745c5c3_Err, FileName: `column.templ`, Line: 84, Col: 153}
 			}
 			_, templ_7745c5c3_Err = templ_7745c5c3_Buffer.WriteString(templ.EscapeString(templ_7745c5c3_Var75))
 			if templ_7745c5c3_Err != nil {
@@ -1399,7 +1399,7 @@ func Patterns() templ.Component {
 		}
 		ctx = templ.InitializeContext(ctx)
 		ctx = templ.ClearChildren(ctx)
-		templ_7745c5c3_Err = templruntime.WriteString(templ_7745c5c3_Buffer, 106, "<svg class=\"patterns\" width=\"0\" height=\"0\" aria-hidden=\"true\" focusable=\"false\"><defs><pattern id=\"hatch-left\" width=\"7\" height=\"7\" patternUnits=\"userSpaceOnUse\" patternTransform=\"rotate(45)\"><path class=\"hatch-left\" d=\"M0 0V7\"></path></pattern> <pattern id=\"hatch-left-tight\" width=\"7\" height=\"7\" patternUnits=\"userSpaceOnUse\" patternTransform=\"rotate(45)\"><path class=\"hatch-left-tight\" d=\"M0 0V7\"></path></pattern> <pattern id=\"hatch-over\" width=\"6\" height=\"6\" patternUnits=\"userSpaceOnUse\" patternTransform=\"rotate(45)\"><path class=\"hatch-over\" d=\"M0 0V6M0 0H6\"></path></pattern> <pattern id=\"hatch-sense\" width=\"4\" height=\"4\" patternUnits=\"userSpaceOnUse\"><path class=\"hatch-print\" d=\"M0 2H4\"></path></pattern> <pattern id=\"hatch-driver\" width=\"4\" height=\"4\" patternUnits=\"userSpaceOnUse\"><path class=\"hatch-print\" d=\"M2 0V4M0 2H4\"></path></pattern> <pattern id=\"hatch-run\" width=\"4\" height=\"4\" patternUnits=\"userSpaceOnUse\" patternTransform=\"rotate(-45)\"><path class=\"hatch-print\" d=\"M0 2H4\"></path></pattern></defs></svg>")
+		templ_7745c5c3_Err = templruntime.WriteString(templ_7745c5c3_Buffer, 106, "<svg class=\"patterns\" width=\"0\" height=\"0\" aria-hidden=\"true\" focusable=\"false\"><defs><pattern id=\"hatch-left\" width=\"7\" height=\"7\" patternUnits=\"userSpaceOnUse\" patternTransform=\"rotate(45)\"><path class=\"hatch-left\" d=\"M0 0V7\"></path></pattern> <pattern id=\"hatch-left-tight\" width=\"7\" height=\"7\" patternUnits=\"userSpaceOnUse\" patternTransform=\"rotate(45)\"><path class=\"hatch-left-tight\" d=\"M0 0V7\"></path></pattern> <pattern id=\"hatch-over\" width=\"9\" height=\"9\" patternUnits=\"userSpaceOnUse\" patternTransform=\"rotate(45)\"><path class=\"hatch-over\" d=\"M0 0V9M0 0H9\"></path></pattern> <pattern id=\"hatch-sense\" width=\"4\" height=\"4\" patternUnits=\"userSpaceOnUse\"><path class=\"hatch-print\" d=\"M0 2H4\"></path></pattern> <pattern id=\"hatch-driver\" width=\"4\" height=\"4\" patternUnits=\"userSpaceOnUse\"><path class=\"hatch-print\" d=\"M2 0V4M0 2H4\"></path></pattern> <pattern id=\"hatch-run\" width=\"4\" height=\"4\" patternUnits=\"userSpaceOnUse\" patternTransform=\"rotate(-45)\"><path class=\"hatch-print\" d=\"M0 2H4\"></path></pattern></defs></svg>")
 		if templ_7745c5c3_Err != nil {
 			return templ_7745c5c3_Err
 		}

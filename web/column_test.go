@@ -227,7 +227,7 @@ func TestColumnWords(t *testing.T) {
 		{"wanted", c.Wanted, "wanted 34\u00a0mA"},
 		{"left over", c.Left, "3.10\u00a0V left over"},
 		{"heat", c.Heat, "0.12\u00a0W in BC547B"},
-		{"times", c.Times, "× 1"},
+		{"times", c.Times, "×\u00a01"},
 		{"outcome", c.Outcome, "pass"},
 		{"voice", c.Voice, "String A, 1 alike: 34.1\u00a0mA, 3.10\u00a0V left over; left over 2.4\u00a0V to 4.0\u00a0V in the worst case"},
 	} {
