@@ -15,10 +15,12 @@ type ChecksView struct {
 	Pass  []CheckView
 	Sum   string // "28 pass"
 	Count map[calc.Severity]int
+	taken map[string]bool // ids given
 }
 
 // CheckView is one line of the ledger.
 type CheckView struct {
+	ID       string // the same for the same check after an edit
 	Verdict  VerdictView
 	What     string // "Headroom"
 	Where    string // "string B"
@@ -64,10 +66,11 @@ var codeWords = map[string]string{
 
 // newChecks makes the ledger of a report.
 func newChecks(b calc.Build, r calc.Report) ChecksView {
-	v := ChecksView{Count: map[calc.Severity]int{}}
+	v := ChecksView{Count: map[calc.Severity]int{}, taken: map[string]bool{}}
 	entries := NewBuildForm(b, nil).Entries()
 	for i, f := range r.Findings {
 		row := checkView(i, f, entries)
+		row.ID = checkID(f, v.taken)
 		rows := &v.Rows
 		if f.Severity == calc.Pass {
 			rows = &v.Pass
@@ -79,6 +82,17 @@ func newChecks(b calc.Build, r calc.Report) ChecksView {
 	}
 	v.Sum = strconv.Itoa(len(v.Pass)) + " pass"
 	return v
+}
+
+// checkID names a check by what it is about, so that an answer finds its line
+// again wherever that has moved to.
+func checkID(f calc.Finding, taken map[string]bool) string {
+	id := "check-" + strings.TrimPrefix(FieldID(f.Code+"-"+f.Where), "f-")
+	for n := 2; taken[id]; n++ {
+		id = strings.TrimPrefix(FieldID(fmt.Sprintf("check-%s-%s-%d", f.Code, f.Where, n)), "f-")
+	}
+	taken[id] = true
+	return id
 }
 
 // joined puts a row's place into one above it that says the very same of
