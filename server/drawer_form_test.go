@@ -176,6 +176,7 @@ func TestFaultsStandBesideTheirField(t *testing.T) {
 		{"no forward voltage", "led", led("forward_voltage", ""), "forward_voltage", "is needed, like 2.8 / 2.95 / 3.2 V"},
 		{"cannot be read", "led", led("max_junction", "warm"), "max_junction", "degrees Celsius"},
 		{"out of range", "led", led("test_current", "0 A"), "test_current", "must be above 0"},
+		{"beyond the most, where a document's writer would get a hint", "led", led("test_current", "200 A"), "test_current", "at most 100"},
 		{"out of range in a spread", "led", led("forward_voltage", "0 / 2 / 3 V"), "forward_voltage", "must be above 0"},
 		{"falling spread", "led", led("forward_voltage", "3 / 2 / 1 V"), "forward_voltage", "does not rise"},
 		{"half an object, the other half missing", "npn", npn("vbe_on.volts", "0.65 V"), "vbe_on.at", "missing"},
