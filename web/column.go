@@ -43,7 +43,7 @@ type ColumnView struct {
 	Label   string // "A"
 	Times   string // "× 4"
 	Href    string // the string's fields
-	Blocks  []Block
+	Parts   []ColumnPart // from the foot up
 	Notes   []Note
 	Over    *Over   // nil when the stack fits
 	Worst   *Worst  // nil when there is none to show
@@ -129,7 +129,7 @@ func column(b calc.Build, i int, r calc.StringReport, c calc.Column, s Scale, f 
 		Current: quantity.Format(c.Current, quantity.Amp, 3),
 		Heat:    quantity.Format(c.Heat, quantity.Watt, 2) + " in " + holder(b, i),
 	}
-	v.Blocks, v.Notes, v.Top = stack(pieces(b, i, c, at), s, f, s.Y(c.Supply))
+	v.Parts, v.Notes, v.Top = stack(pieces(b, i, c, at), s, f, s.Y(c.Supply))
 	v.Outcome, v.Left = leftOver(b, r, c)
 	if w := b.Strings[i].Wanted; w != nil && w.Current != nil {
 		v.Wanted = "wanted " + quantity.Text(*w.Current, quantity.Amp)

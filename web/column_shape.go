@@ -75,8 +75,14 @@ type Block struct {
 	FigY   Px     // baseline
 	Stack  bool   // name and figure stand one above the other, centred
 	Ticks  []Px   // where one LED of a merged block ends and the next begins
-	Href   string // the field it leads to
-	Voice  string // "6 × white, 3.19 V each, 19.1 V together"
+}
+
+// ColumnPart is what of a string leads to one field: one block, or the LEDs of one
+// stack.
+type ColumnPart struct {
+	Blocks []Block // from the foot up
+	Href   string  // the field
+	Voice  string  // "6 × white, 3.19 V each, 19.1 V together"
 }
 
 // Note is a line of words beside a block too thin to carry them.
@@ -108,17 +114,19 @@ type piece struct {
 
 // stack places the pieces on the scale from the foot up. Every LED is a block
 // of its own where it can carry its name; else those of one stack are merged.
-func stack(pieces []piece, s Scale, f Frame, supply Px) (blocks []Block, notes []Note, top float64) {
+func stack(pieces []piece, s Scale, f Frame, supply Px) (parts []ColumnPart, notes []Note, top float64) {
 	for _, p := range pieces {
 		if !(p.volts > 0) {
 			continue
 		}
 		each := p.volts / float64(p.count)
+		part := ColumnPart{Href: p.href, Voice: p.voice}
 		if p.count > 1 && s.Tall(each) >= textTall {
 			for range p.count {
-				blocks = append(blocks, block(p, each, "", top, s, f))
+				part.Blocks = append(part.Blocks, block(p, each, "", top, s, f))
 				top += each
 			}
+			parts = append(parts, part)
 			continue
 		}
 		text := ""
@@ -132,18 +140,19 @@ func stack(pieces []piece, s Scale, f Frame, supply Px) (blocks []Block, notes [
 		if b.Name == "" && b.Figure == "" && f.Notes {
 			notes = append(notes, Note{From: b.Y + b.Tall/2, Text: text + p.name + " " + figureVolts(each)})
 		}
-		blocks = append(blocks, b)
+		part.Blocks = []Block{b}
+		parts = append(parts, part)
 		top += p.volts
 	}
 	spreadNotes(notes, f, supply)
-	return blocks, notes, top
+	return parts, notes, top
 }
 
 // block places one piece, or one LED of it, with its lower end at from.
 func block(p piece, v float64, times string, from float64, s Scale, f Frame) Block {
 	b := Block{
 		Kind: p.kind, Volts: v, Y: s.Y(from + v), Tall: s.Tall(v),
-		Fill: p.light.Fill, Ink: p.light.Ink, Href: p.href, Voice: p.voice,
+		Fill: p.light.Fill, Ink: p.light.Ink,
 	}
 	figure := figureVolts(v)
 	if times != "" {

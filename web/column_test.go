@@ -57,6 +57,15 @@ func picture(corner string, f web.Frame, supply calc.Spread, strs ...someString)
 	return b, r, web.NewPicture(b, r, corner, f)
 }
 
+// blocksOf lists all blocks of a column from the foot up.
+func blocksOf(c web.ColumnView) []web.Block {
+	var blocks []web.Block
+	for _, p := range c.Parts {
+		blocks = append(blocks, p.Blocks...)
+	}
+	return blocks
+}
+
 var harbour = []someString{
 	{supply: 23.5, run: 0.45, driver: 0.2, sense: 0.61, leds: []calc.ColumnLED{{Part: "white", Quantity: 6, Each: 3.19}}},
 	{supply: 23.5, run: 0.45, driver: 0.2, sense: 0.61, leds: []calc.ColumnLED{{Part: "white", Quantity: 7, Each: 3.22}}},
@@ -77,7 +86,7 @@ func TestColumnHeights(t *testing.T) {
 			name := fmt.Sprintf("%s %s", f.Name, c.Label)
 			at := c.Scale.Y(0)
 			sum := 0.0
-			for _, b := range c.Blocks {
+			for _, b := range blocksOf(c) {
 				near(t, name+" "+b.Kind+" lower edge", float64(b.Y+b.Tall), float64(at), 1e-9)
 				near(t, name+" "+b.Kind+" tall", float64(b.Tall), float64(c.Scale.Tall(b.Volts)), 1e-9)
 				at = b.Y
@@ -94,7 +103,7 @@ func TestColumnHeights(t *testing.T) {
 func TestColumnOrder(t *testing.T) {
 	_, _, v := picture(web.Usual, web.WideFrame, harbourSupply, harbour...)
 	var kinds []string
-	for _, b := range v.Columns[2].Blocks {
+	for _, b := range blocksOf(v.Columns[2]) {
 		kinds = append(kinds, b.Kind+" "+b.Name)
 	}
 	got := strings.Join(kinds, ", ")
@@ -134,7 +143,7 @@ func TestColumnWordsDoNotOverlap(t *testing.T) {
 	for _, f := range frames {
 		_, _, v := picture(web.Usual, f, calc.Spread{Min: 46, Typ: 48, Max: 60}, many, tiny, harbour[1])
 		for _, c := range v.Columns {
-			for _, b := range c.Blocks {
+			for _, b := range blocksOf(c) {
 				if b.Figure == "" && b.Name == "" {
 					continue
 				}
@@ -180,7 +189,7 @@ func TestColumnMergesThinLEDs(t *testing.T) {
 	long := someString{supply: 48, run: 0.1, driver: 0.2, sense: 1, leds: []calc.ColumnLED{{Part: "red", Quantity: 20, Each: 2.1}}}
 	_, _, v := picture(web.Usual, web.WideFrame, calc.Exactly(48), long)
 	var leds []web.Block
-	for _, b := range v.Columns[0].Blocks {
+	for _, b := range blocksOf(v.Columns[0]) {
 		if b.Kind == "led" {
 			leds = append(leds, b)
 		}
@@ -190,7 +199,7 @@ func TestColumnMergesThinLEDs(t *testing.T) {
 	}
 	_, _, v = picture(web.Usual, web.WideFrame, calc.Exactly(60), long)
 	leds = nil
-	for _, b := range v.Columns[0].Blocks {
+	for _, b := range blocksOf(v.Columns[0]) {
 		if b.Kind == "led" {
 			leds = append(leds, b)
 		}
@@ -206,10 +215,11 @@ func TestColumnMergesThinLEDs(t *testing.T) {
 func TestColumnLinksToItsFields(t *testing.T) {
 	_, _, v := picture(web.Usual, web.WideFrame, harbourSupply, harbour...)
 	var got []string
-	for _, b := range v.Columns[0].Blocks {
-		if len(got) == 0 || got[len(got)-1] != b.Href {
-			got = append(got, b.Href)
-		}
+	for _, p := range v.Columns[0].Parts {
+		got = append(got, p.Href)
+	}
+	if want := "6 × white, small chip, 0.2 W, 3.19\u00a0V each, 19.1\u00a0V together"; v.Columns[0].Parts[3].Voice != want {
+		t.Errorf("the LEDs say %q, want %q", v.Columns[0].Parts[3].Voice, want)
 	}
 	want := "#f-strings-0-driver-sense-ohms #f-strings-0-driver-pass #string-0 #f-strings-0-leds-0-quantity #f-strings-0-fed-by"
 	if strings.Join(got, " ") != want {
