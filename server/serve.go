@@ -81,6 +81,9 @@ func serve(ctx context.Context, args []string, stdout, stderr io.Writer) int {
 // serveUntil answers on the listener until ctx ends, then lets the requests
 // under way finish.
 func (s *server) serveUntil(ctx context.Context, listener net.Listener, stdout, stderr io.Writer, file string) error {
+	if err := s.start(ctx); err != nil {
+		return err
+	}
 	address, _ := listener.Addr().(*net.TCPAddr)
 	fmt.Fprintf(stdout, "%s\n", webAddress(address.AddrPort()))
 	fmt.Fprintf(stdout, "data: %s\n", file)
@@ -112,6 +115,16 @@ func (s *server) serveUntil(ctx context.Context, listener net.Listener, stdout, 
 	return nil
 }
 
+// start fills a store that has never held anything, so that a first look finds
+// a drawer to build from.
+func (s *server) start(ctx context.Context) error {
+	empty, err := s.store.Empty(ctx)
+	if err != nil || !empty {
+		return err
+	}
+	return s.seed(ctx)
+}
+
 // webAddress is what to type into a browser. One that listens on all
 // interfaces is reached on this machine by its loopback address.
 func webAddress(at netip.AddrPort) string {
@@ -126,7 +139,7 @@ func webAddress(at netip.AddrPort) string {
 // one in the user's configuration folder.
 func dataFile(named string) (string, error) {
 	if named != "" {
-		return named, nil
+		return filepath.Abs(named) // so that what is printed can be found from anywhere
 	}
 	config, err := os.UserConfigDir()
 	if err != nil {

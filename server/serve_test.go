@@ -48,6 +48,25 @@ func TestTheProgramStartsAnswersStopsAndRemembers(t *testing.T) {
 	}
 }
 
+func TestAFirstStartIsSeededOnceOnly(t *testing.T) {
+	data := filepath.Join(t.TempDir(), "shop.db")
+	count := func() int {
+		p := startProgram(t, data)
+		list := decode[map[string][]listedBuild](t, ask(t, p.base, http.MethodGet, "/api/builds", ""))["builds"]
+		if code := p.end(t, syscall.SIGTERM); code != 0 {
+			t.Fatalf("exit %d\n%s", code, p.stderr)
+		}
+		return len(list)
+	}
+	first := count()
+	if first < 3 {
+		t.Errorf("a first start puts %d builds on the shelf, want 3 at least", first)
+	}
+	if again := count(); again != first {
+		t.Errorf("the second start has %d builds, the first %d", again, first)
+	}
+}
+
 func TestTheDefaultFileLiesInTheConfigurationFolder(t *testing.T) {
 	home := t.TempDir()
 	t.Setenv("XDG_CONFIG_HOME", home)
