@@ -37,7 +37,7 @@ func (s *server) lookAtPart(w http.ResponseWriter, r *http.Request) error {
 	if err != nil {
 		return err
 	}
-	if err := r.ParseForm(); err != nil {
+	if err = r.ParseForm(); err != nil {
 		return err
 	}
 	was, err := readMembers(part.Document)

@@ -30,13 +30,13 @@ func readMembers(document []byte) (members, error) {
 	}
 	var m members
 	for d.More() {
-		token, err := d.Token()
-		if err != nil {
+		var token json.Token
+		if token, err = d.Token(); err != nil {
 			return nil, err
 		}
 		key, _ := token.(string) // More is true: the token is a key
 		var value json.RawMessage
-		if err := d.Decode(&value); err != nil {
+		if err = d.Decode(&value); err != nil {
 			return nil, err
 		}
 		m = append(m, member{key, value})

@@ -49,8 +49,7 @@ func (s *server) createPart(w http.ResponseWriter, r *http.Request) error {
 		return render(w, r, http.StatusUnprocessableEntity, web.PartPage(newPartView(form, base, typed, r.PostFormValue("from"))))
 	}
 	made, err := s.putIntoDrawer(r, typed, form, document)
-	var taken *store.KeyTaken
-	if errors.As(err, &taken) {
+	if _, taken := errors.AsType[*store.KeyTaken](err); taken {
 		form.faults["key"] = "the drawer has a part of this key already"
 		return render(w, r, http.StatusUnprocessableEntity, web.PartPage(newPartView(form, base, typed, r.PostFormValue("from"))))
 	}
@@ -71,8 +70,7 @@ func (s *server) putIntoDrawer(r *http.Request, typed string, form partForm, doc
 	key := name
 	for n := 2; ; n++ {
 		made, err := s.store.CreatePart(r.Context(), key, document)
-		var taken *store.KeyTaken
-		if !errors.As(err, &taken) {
+		if _, taken := errors.AsType[*store.KeyTaken](err); !taken {
 			return made, err
 		}
 		key = name + "-" + strconv.Itoa(n)
@@ -99,7 +97,7 @@ func (s *server) savePart(w http.ResponseWriter, r *http.Request) error {
 	if err != nil {
 		return err
 	}
-	if err := r.ParseForm(); err != nil {
+	if err = r.ParseForm(); err != nil {
 		return err
 	}
 	was, err := readMembers(part.Document)

@@ -13,16 +13,16 @@ import (
 )
 
 // stocked is a shop with three parts in the drawer.
-func stocked(t testing.TB) *shop {
-	t.Helper()
-	p := openShop(t)
+func stocked(tb testing.TB) *shop {
+	tb.Helper()
+	p := openShop(tb)
 	for key, document := range map[string]string{
 		"bc547b": `{"type": "npn", "name": "BC547B", "package": "TO-92", "pins": "C-B-E", "price": 0.05, "notes": "Datasheet of 2003", "max_collector_emitter_voltage": 45, "hfe": {"min": 200, "typ": 290, "max": 450}, "hfe_at": 0.002}`,
 		"amber":  `{"type": "led", "name": "Ämber 5 mm", "wavelength": 590, "test_current": 0.02, "forward_voltage": {"min": 2.0, "typ": 2.1, "max": 2.2}, "luminous_intensity": 3, "max_current": 0.03}`,
 		"brick":  `{"type": "supply", "name": "12 V brick", "voltage": 12, "max_current": 1}`,
 	} {
 		if _, err := p.s.store.CreatePart(context.Background(), key, []byte(document)); err != nil {
-			t.Fatal(err)
+			tb.Fatal(err)
 		}
 	}
 	return p
@@ -86,7 +86,7 @@ func TestDrawerSearch(t *testing.T) {
 
 func TestNewPart(t *testing.T) {
 	p := stocked(t)
-	fields := fieldsOf(t, p.get("/drawer/new?type=npn"), "part-form")
+	fields := fieldsOf(t, p.get("/drawer/new?type=npn"))
 	fields.Set("name", "2N 3904")
 	fields.Set("max_collector_current", "200 mA")
 	at := p.press("/drawer", fields)
@@ -135,7 +135,7 @@ func TestKeysOfNewParts(t *testing.T) {
 func TestRefusedPartKeepsWhatWasTyped(t *testing.T) {
 	p := stocked(t)
 	before := p.part("amber").Document
-	fields := fieldsOf(t, p.get("/drawer/amber"), "part-form")
+	fields := fieldsOf(t, p.get("/drawer/amber"))
 	fields.Set("test_current", "20")
 	fields.Set("max_junction", `"><script>alert(1)</script>`)
 	fields.Set("notes", "</textarea><script>alert(2)</script>\r\nsecond line")
@@ -144,7 +144,7 @@ func TestRefusedPartKeepsWhatWasTyped(t *testing.T) {
 	a.wantStatus(t, http.StatusUnprocessableEntity)
 	wantNot(t, a.body, "<script>alert")
 	wantWords(t, a.body, `"20" has no unit: write it like 20 mA`, "is", `aria-invalid="true"`)
-	again := fieldsOf(t, a.body, "part-form")
+	again := fieldsOf(t, a.body)
 	for name := range fields {
 		if again.Get(name) != fields.Get(name) {
 			t.Errorf("%s was typed %q and comes back as %q", name, fields.Get(name), again.Get(name))
@@ -160,7 +160,7 @@ func TestRefusedPartKeepsWhatWasTyped(t *testing.T) {
 
 func TestEditPart(t *testing.T) {
 	p := stocked(t)
-	fields := fieldsOf(t, p.get("/drawer/bc547b"), "part-form")
+	fields := fieldsOf(t, p.get("/drawer/bc547b"))
 	fields.Set("max_collector_emitter_voltage", "50 V")
 	at := p.press("/drawer/bc547b", fields)
 	wantWords(t, p.get(at), "“BC547B” is kept.")
@@ -171,8 +171,8 @@ func TestEditPart(t *testing.T) {
 
 func TestPartChangedMeanwhile(t *testing.T) {
 	p := stocked(t)
-	mine := fieldsOf(t, p.get("/drawer/bc547b"), "part-form")
-	theirs := fieldsOf(t, p.get("/drawer/bc547b"), "part-form")
+	mine := fieldsOf(t, p.get("/drawer/bc547b"))
+	theirs := fieldsOf(t, p.get("/drawer/bc547b"))
 	theirs.Set("max_collector_emitter_voltage", "30 V")
 	p.press("/drawer/bc547b", theirs)
 
@@ -183,7 +183,7 @@ func TestPartChangedMeanwhile(t *testing.T) {
 	if strings.Contains(string(p.part("bc547b").Document), "SOT-23") {
 		t.Error("theirs was overwritten unseen")
 	}
-	again := fieldsOf(t, a.body, "part-form")
+	again := fieldsOf(t, a.body)
 	if again.Get("package") != "SOT-23" {
 		t.Error("mine is lost")
 	}
@@ -195,7 +195,7 @@ func TestPartChangedMeanwhile(t *testing.T) {
 
 func TestCopyPart(t *testing.T) {
 	p := stocked(t)
-	fields := fieldsOf(t, p.get("/drawer/new?from=bc547b"), "part-form")
+	fields := fieldsOf(t, p.get("/drawer/new?from=bc547b"))
 	if fields.Get("name") != "BC547B, copy" || fields.Get("from") != "bc547b" || fields.Get("max_collector_emitter_voltage") != "45\u00a0V" {
 		t.Errorf("the form holds %v", fields)
 	}
@@ -232,7 +232,7 @@ func TestPartInUseStaysInItsBuild(t *testing.T) {
 	p := stocked(t)
 	address := p.importBuild(shelfLight(t)) // it uses a part "amber" of its own
 	before := p.get(address)
-	fields := fieldsOf(t, p.get("/drawer/amber"), "part-form")
+	fields := fieldsOf(t, p.get("/drawer/amber"))
 	fields.Set("forward_voltage", "5 V")
 	p.press("/drawer/amber", fields)
 	p.press("/drawer/amber/delete", nil)
@@ -255,7 +255,7 @@ func TestBringBackOverANamesake(t *testing.T) {
 func TestLookKeepsNothing(t *testing.T) {
 	p := stocked(t)
 	before := p.part("amber").Document
-	fields := fieldsOf(t, p.get("/drawer/amber"), "part-form")
+	fields := fieldsOf(t, p.get("/drawer/amber"))
 	fields.Set("max_current", "0,02")
 	fields.Set("wavelength", "470")
 	a := p.do(http.MethodPost, "/drawer/amber/look", fields.Encode(), "Content-Type", formType, "HX-Request", "true")

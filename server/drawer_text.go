@@ -86,8 +86,9 @@ func (f figure) bare(typed string) error {
 	if !f.scaled || f.unit == quantity.Number {
 		return nil
 	}
-	s, err := quantity.ParseSpread(typed, quantity.Number)
-	if err != nil || strings.Contains(typed, "%") || s.Min == 0 && s.Max == 0 {
+	number, err := quantity.ParseSpread(typed, quantity.Number)
+	plain := err == nil && !strings.Contains(typed, "%")
+	if !plain || number.Min == 0 && number.Max == 0 {
 		return nil
 	}
 	return fmt.Errorf("%q has no unit: write it like %s", strings.TrimSpace(typed), f.example)
@@ -114,7 +115,7 @@ func (f figure) parsePair(line string) (pair [2]float64, err error) {
 	if len(pieces) != 2 {
 		return pair, fmt.Errorf("write two values, like %s", f.example)
 	}
-	if err := f.bare(pieces[0]); err != nil {
+	if err = f.bare(pieces[0]); err != nil {
 		return pair, err
 	}
 	if pair[0], err = quantity.Parse(pieces[0], f.unit); err != nil {
@@ -130,7 +131,7 @@ func (f figure) parsePair(line string) (pair [2]float64, err error) {
 func valuesOf(line string) []string {
 	line = strings.NewReplacer(";", "|", "\t", "|", ", ", "|", " / ", "|").Replace(strings.TrimSpace(line))
 	var pieces []string
-	for _, part := range strings.Split(line, "|") {
+	for part := range strings.SplitSeq(line, "|") {
 		for i, word := range strings.Fields(part) {
 			if i == 0 || startsValue(word) {
 				pieces = append(pieces, word)

@@ -65,45 +65,45 @@ func (p *shop) stockFromSeed() {
 
 // wantWords fails for every text that a page lacks. Texts are as a person
 // reads them: without entities, a no-break space as any other.
-func wantWords(t testing.TB, page string, words ...string) {
-	t.Helper()
+func wantWords(tb testing.TB, page string, words ...string) {
+	tb.Helper()
 	page = strings.ReplaceAll(html.UnescapeString(page), "\u00a0", " ")
 	for _, w := range words {
 		if !strings.Contains(page, w) {
-			t.Errorf("the page does not say %q", w)
+			tb.Errorf("the page does not say %q", w)
 		}
 	}
 }
 
 // wantNot fails for every text that a page has, by its source.
-func wantNot(t testing.TB, page string, words ...string) {
-	t.Helper()
+func wantNot(tb testing.TB, page string, words ...string) {
+	tb.Helper()
 	for _, w := range words {
 		if strings.Contains(page, w) {
-			t.Errorf("the page has %q", w)
+			tb.Errorf("the page has %q", w)
 		}
 	}
 }
 
 // wantJSON fails unless two texts are the same JSON value.
-func wantJSON(t testing.TB, got, want string) {
-	t.Helper()
+func wantJSON(tb testing.TB, got, want string) {
+	tb.Helper()
 	var g, w any
 	if err := json.Unmarshal([]byte(got), &g); err != nil {
-		t.Fatalf("%v in %.200s", err, got)
+		tb.Fatalf("%v in %.200s", err, got)
 	}
 	if err := json.Unmarshal([]byte(want), &w); err != nil {
-		t.Fatalf("%v in %.200s", err, want)
+		tb.Fatalf("%v in %.200s", err, want)
 	}
 	if diff := cmp.Diff(w, g); diff != "" {
-		t.Errorf("another JSON value (-want +got):\n%s", diff)
+		tb.Errorf("another JSON value (-want +got):\n%s", diff)
 	}
 }
 
-func writeFile(t testing.TB, path, content string) {
-	t.Helper()
+func writeFile(tb testing.TB, path, content string) {
+	tb.Helper()
 	if err := os.WriteFile(path, []byte(content), 0o600); err != nil {
-		t.Fatal(err)
+		tb.Fatal(err)
 	}
 }
 
@@ -116,12 +116,12 @@ var (
 	valueOf    = regexp.MustCompile(`\bvalue="([^"]*)"`)
 )
 
-// fieldsOf is what a browser would send of the form that has this id.
-func fieldsOf(t testing.TB, page, id string) url.Values {
-	t.Helper()
-	_, rest, found := strings.Cut(page, `<form id="`+id+`"`)
+// fieldsOf is what a browser would send of a part's form.
+func fieldsOf(tb testing.TB, page string) url.Values {
+	tb.Helper()
+	_, rest, found := strings.Cut(page, `<form id="part-form"`)
 	if !found {
-		t.Fatalf("the page has no form %q", id)
+		tb.Fatal("the page has no form of a part")
 	}
 	form, _, _ := strings.Cut(rest, "</form>")
 	fields := url.Values{}

@@ -40,9 +40,9 @@ func (s *server) showShelf(w http.ResponseWriter, r *http.Request) error {
 	}
 	total := len(found)
 	if query != "" {
-		all, err := s.store.Builds(r.Context(), "")
-		if err != nil {
-			return err
+		all, failed := s.store.Builds(r.Context(), "")
+		if failed != nil {
+			return failed
 		}
 		total = len(all)
 	}

@@ -45,7 +45,7 @@ func (s *server) downloadBackup(w http.ResponseWriter, r *http.Request) error {
 		}
 	}()
 	path := filepath.Join(folder, "copy.db")
-	if err := s.store.Backup(r.Context(), path); err != nil {
+	if err = s.store.Backup(r.Context(), path); err != nil {
 		return err
 	}
 	file, err := os.Open(path) //nolint:gosec // a path of our own making

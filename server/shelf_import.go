@@ -38,8 +38,7 @@ func (s *server) importDocument(w http.ResponseWriter, r *http.Request) error {
 		return refused("That file is no text", calc.Invalid{{Reason: "A build's document is JSON in UTF-8; this is something else."}})
 	}
 	kept, _, _, err := s.create(r.Context(), document)
-	var invalid calc.Invalid
-	if errors.As(err, &invalid) {
+	if invalid, is := errors.AsType[calc.Invalid](err); is {
 		return refused("The document is refused: "+plural(len(invalid), "thing is", "things are")+" wrong with it", invalid)
 	}
 	if err != nil {
@@ -52,9 +51,8 @@ func (s *server) importDocument(w http.ResponseWriter, r *http.Request) error {
 // sentDocument is the chosen file, or else the text. A mark of byte order at
 // its start, which some editors leave, is no part of it.
 func sentDocument(r *http.Request) ([]byte, error) {
-	if err := r.ParseMultipartForm(pageBody); err != nil {
-		var tooLarge *http.MaxBytesError
-		if errors.As(err, &tooLarge) || r.Context().Err() != nil {
+	if err := r.ParseMultipartForm(pageBody); err != nil { //nolint:gosec // maxBody bounds the body of every page's request
+		if _, tooLarge := errors.AsType[*http.MaxBytesError](err); tooLarge || r.Context().Err() != nil {
 			return nil, err
 		}
 		return nil, refuse(http.StatusBadRequest, "The form cannot be read", "Send it from the page /import.")

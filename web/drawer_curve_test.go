@@ -12,15 +12,15 @@ import (
 )
 
 // places reads the points of a path that is made of M, L and Z alone.
-func places(t testing.TB, path string) [][2]float64 {
-	t.Helper()
+func places(tb testing.TB, path string) [][2]float64 {
+	tb.Helper()
 	var list [][2]float64
 	for _, point := range strings.FieldsFunc(path, func(r rune) bool { return strings.ContainsRune("MLZ", r) }) {
 		x, y, found := strings.Cut(point, " ")
 		px, errX := strconv.ParseFloat(x, 64)
 		py, errY := strconv.ParseFloat(y, 64)
 		if !found || errX != nil || errY != nil {
-			t.Fatalf("no place: %q in %q", point, path)
+			tb.Fatalf("no place: %q in %q", point, path)
 		}
 		list = append(list, [2]float64{px, py})
 	}
@@ -119,7 +119,7 @@ func TestCurveStaysInItsFrame(t *testing.T) {
 		if !ok {
 			t.Fatalf("nothing is drawn of %v, %v", c.X, c.Y)
 		}
-		for _, point := range strings.Split(strings.TrimPrefix(v.Line, "M"), "L") {
+		for point := range strings.SplitSeq(strings.TrimPrefix(v.Line, "M"), "L") {
 			var px, py float64
 			if px, py = pair(point); !(px >= 0 && px <= float64(web.CurveWide) && py >= 0 && py <= float64(web.CurveTall)) {
 				t.Fatalf("%q lies outside the drawing", point)
