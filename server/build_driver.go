@@ -44,16 +44,34 @@ func writeDriver(d *draft, at, kind string, b calc.Build, drawer []web.Stock) er
 		return s.write(at, s.followerSink, calc.TypeNPN, calc.TypePNP)
 	case calc.KindReferenceSink:
 		return s.write(at, s.referenceSink, calc.TypeNPN)
+	case calc.KindRailSink:
+		return s.railSink(at)
+	case calc.KindOpampSink:
+		return s.write(at, s.opampSink, calc.TypeOpamp, calc.TypeNMOS)
+	case calc.KindRegulator:
+		return s.write(at, s.regulator, calc.TypeRegulator)
+	case calc.KindModule:
+		return s.write(at, s.module, calc.TypeModule)
 	}
-	return fmt.Errorf("this kind of driver cannot be computed yet")
+	return fmt.Errorf("there is no such kind of driver")
 }
 
-// write gives the string a driver that needs a transistor of each of these
-// types, in the order of the maker's arguments.
-func (s starter) write(at string, maker func(transistors []string) map[string]any, types ...string) error {
+// write gives the string a driver that needs a part of each of these types, in
+// the order of the maker's arguments.
+func (s starter) write(at string, maker func(parts []string) map[string]any, types ...string) error {
+	keys, err := s.take(types...)
+	if err != nil {
+		return err
+	}
+	return s.d.set(at, maker(keys))
+}
+
+// take finds a part of each of these types and copies into the build what it
+// does not have yet.
+func (s starter) take(types ...string) ([]string, error) {
 	for _, typ := range types { // before the first is copied: an edit is made whole or not at all
 		if _, _, found := s.find(typ); !found {
-			return fmt.Errorf("this driver needs a transistor of type %s, and the drawer has none", typ)
+			return nil, fmt.Errorf("this needs a part of type %s, and the drawer has none", typ)
 		}
 	}
 	keys := make([]string, len(types))
@@ -62,12 +80,12 @@ func (s starter) write(at string, maker func(transistors []string) map[string]an
 		if stocked {
 			var err error
 			if key, err = copyPart(s.d, key, s.drawer); err != nil {
-				return err
+				return nil, err
 			}
 		}
 		keys[i] = key
 	}
-	return s.d.set(at, maker(keys))
+	return keys, nil
 }
 
 // stringIndex reads the string's number out of "/strings/3/driver".
@@ -94,6 +112,12 @@ func builtFor(b calc.Build, i int) float64 {
 		volts, sense = controlVolts(d.FollowerSink.Control, b.Supply.Voltage.Typ), d.FollowerSink.Sense
 	case d.ReferenceSink != nil:
 		volts, sense = d.ReferenceSink.Reference.Volts.Typ-sinkVBE, d.ReferenceSink.Sense
+	case d.OpampSink != nil:
+		volts, sense = controlVolts(d.OpampSink.Control, b.Supply.Voltage.Typ), d.OpampSink.Sense
+	case d.RailSink != nil:
+		volts, sense = railVolts(b, d.RailSink.Rail)-sinkVBE, d.RailSink.Sense
+	case d.Regulator != nil:
+		volts, sense = regulatorVolts, d.Regulator.Set
 	case d.Resistor != nil:
 		volts, sense = b.Supply.Voltage.Typ-forwardVolts(b, i), d.Resistor.Resistor
 	}
@@ -190,6 +214,8 @@ func (s starter) senseOhms(otherwise float64) float64 {
 		return s.old.FollowerSink.Sense.Ohms
 	case s.old.ReferenceSink != nil:
 		return s.old.ReferenceSink.Sense.Ohms
+	case s.old.OpampSink != nil:
+		return s.old.OpampSink.Sense.Ohms
 	}
 	return otherwise
 }
@@ -206,6 +232,10 @@ func (s starter) sense(ohms float64) map[string]any {
 		old = &s.old.ReferenceSink.Sense
 	case s.old.TwoTransistor != nil:
 		old = &s.old.TwoTransistor.Sense
+	case s.old.RailSink != nil:
+		old = &s.old.RailSink.Sense
+	case s.old.OpampSink != nil:
+		old = &s.old.OpampSink.Sense
 	}
 	if old != nil {
 		r["tolerance"] = old.Tolerance
@@ -243,6 +273,8 @@ func (s starter) find(typ string) (key string, stocked, found bool) {
 			return d.ReferenceSink.NPN, false, true
 		case d.TwoTransistor != nil:
 			return d.TwoTransistor.Pass, false, true
+		case d.RailSink != nil:
+			return d.RailSink.NPN, false, true
 		}
 	}
 	for _, key := range slices.Sorted(maps.Keys(s.b.Parts)) {

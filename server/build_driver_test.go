@@ -15,13 +15,14 @@ func TestDriverKindsKeepTheCurrent(t *testing.T) {
 	document := bench(t)
 	before, _, _ := buildOn(t, document)
 	for i := range before.Strings {
-		for _, kind := range web.Solved {
-			b, form, d := buildOn(t, document)
+		for _, kind := range web.DriverKinds() {
+			stock := boughtStock(t)
+			b, form, d := buildOn(t, document, stock...)
 			if b.Strings[i].Driver.Kind == kind {
 				continue
 			}
 			name := b.Strings[i].Label + " becomes " + kind
-			faults := formText{form.Strings[i].Driver.Name: kind}.write(d, form, b, nil, nil)
+			faults := formText{form.Strings[i].Driver.Name: kind}.write(d, form, b, stock, nil)
 			if len(faults) > 0 {
 				t.Errorf("%s: %v", name, faults)
 				continue
@@ -36,6 +37,9 @@ func TestDriverKindsKeepTheCurrent(t *testing.T) {
 				continue
 			}
 			want := builtFor(before, i)
+			if kind == calc.KindModule {
+				want = 0.02 // what it was bought for
+			}
 			// E24 steps are 10 % apart; the rest is what the rules of thumb leave out.
 			if got := report.Strings[i].Current.Typ; !(math.Abs(got-want) <= 0.25*want) {
 				t.Errorf("%s: %v A, built for %v A", name, got, want)
@@ -119,5 +123,66 @@ func TestFittedRating(t *testing.T) {
 		if got := fitted(c.ohms, 0.01, c.current)["watts"]; got != c.want {
 			t.Errorf("%v A through %v Ω: %v W, want %v W", c.current, c.ohms, got, c.want)
 		}
+	}
+}
+
+// boughtStock is a drawer with one of each part that no string of the bench
+// has: op-amp, MOSFET, regulator, module.
+func boughtStock(t testing.TB) []web.Stock {
+	t.Helper()
+	var stock []web.Stock
+	for key, document := range map[string]string{
+		"lm358":  `{"type":"opamp","offset_voltage":0.007,"input_low":0,"input_high":1.5,"output_low":0.02,"output_high":1.5,"supply_current":0.0007}`,
+		"2n7000": `{"type":"nmos","gate_threshold":{"min":0.8,"typ":2.1,"max":3},"on_resistance":5,"on_resistance_at":10}`,
+		"lm317l": `{"type":"regulator","reference_voltage":{"min":1.2,"typ":1.25,"max":1.3},"adjustment_current":0.00005,"dropout":[[0.1,2]]}`,
+		"mod20":  `{"type":"module","current":0.02,"dropout":1.5}`,
+	} {
+		part, err := calc.ReadPart([]byte(document))
+		if err != nil {
+			t.Fatal(err)
+		}
+		stock = append(stock, web.Stock{Key: key, Part: part, Document: []byte(document)})
+	}
+	return stock
+}
+
+// A rail is added, becomes any other kind at about the same voltage, carries a
+// string, and cannot be taken away while it does.
+func TestRails(t *testing.T) {
+	document := bench(t)
+	b, form, d := buildOn(t, document)
+	driver := form.Strings[0].Driver.Name
+	if faults := (formText{driver: calc.KindRailSink}).write(d, form, b, nil, nil); len(faults) > 0 {
+		t.Fatal(faults)
+	}
+	after := patched(t, document, d)
+	if len(after.Rails) != 1 || after.Strings[0].Driver.RailSink.Rail != after.Rails[0].ID {
+		t.Fatalf("rails %+v, string on %q", after.Rails, after.Strings[0].Driver.RailSink.Rail)
+	}
+	raw := applied(t, document, d)
+	volts := map[string]float64{}
+	for _, kind := range []string{web.RailReference, web.RailBuffered, web.RailFollower} {
+		b, form, d := buildOn(t, raw)
+		if faults := (formText{form.Rails[0].Kind.Name: kind}).write(d, form, b, nil, nil); len(faults) > 0 {
+			t.Fatalf("%s: %v", kind, faults)
+		}
+		next := patched(t, raw, d)
+		report, err := calc.Check(next)
+		if err != nil {
+			t.Fatalf("%s: %v", kind, err)
+		}
+		if next.Rails[0].Kind != kind {
+			t.Errorf("the rail is %s, want %s", next.Rails[0].Kind, kind)
+		}
+		volts[kind] = report.Rails[0].Voltage.Typ
+	}
+	for kind, v := range volts {
+		if !(math.Abs(v-volts[web.RailFollower]) < 0.25) {
+			t.Errorf("%s stands at %v V, the follower at %v V", kind, v, volts[web.RailFollower])
+		}
+	}
+	b, _, d = buildOn(t, raw)
+	if _, err := rowCommand(d, "rail-remove /rails/0", b, nil); err == nil || len(d.ops) > 0 {
+		t.Errorf("a rail that carries a string is taken away: %v", err)
 	}
 }

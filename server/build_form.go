@@ -103,6 +103,8 @@ func writeEntry(d *draft, e *web.Entry, text string, b calc.Build, drawer []web.
 		return writeDriver(d, strings.TrimSuffix(e.Name, "/kind"), text, b, drawer)
 	case web.EntryControl:
 		return writeControl(d, e.Name, text, b.Supply.Voltage.Typ)
+	case web.EntryRail:
+		return writeRail(d, strings.TrimSuffix(e.Name, "/kind"), text, b, drawer)
 	case web.EntryEnclosure:
 		return writeEnclosure(d, text)
 	}

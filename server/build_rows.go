@@ -58,6 +58,11 @@ func rowCommand(d *draft, text string, b calc.Build, drawer []web.Stock) (rename
 		return unmoved, countBy(d, at, 1)
 	case "fewer":
 		return unmoved, countBy(d, at, -1)
+	case "rail-add":
+		_, err := addRail(d, b, drawer)
+		return unmoved, err
+	case "rail-remove":
+		return removeRail(d, i, b)
 	case "run-add":
 		return unmoved, addRun(d, b)
 	case "run-remove":

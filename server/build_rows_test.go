@@ -144,6 +144,16 @@ func TestRowCopyIsItsOwn(t *testing.T) {
 // patched is what the draft's patch makes of the document, read strictly.
 func patched(t testing.TB, document string, d *draft) calc.Build {
 	t.Helper()
+	b, err := calc.Read([]byte(applied(t, document, d)))
+	if err != nil {
+		t.Fatal(err)
+	}
+	return b
+}
+
+// applied is the document that a draft makes.
+func applied(t testing.TB, document string, d *draft) string {
+	t.Helper()
 	patch, err := d.patch()
 	if err != nil {
 		t.Fatal(err)
@@ -152,11 +162,7 @@ func patched(t testing.TB, document string, d *draft) calc.Build {
 	if err != nil {
 		t.Fatalf("patch %s: %v", patch, err)
 	}
-	b, err := calc.Read(after)
-	if err != nil {
-		t.Fatalf("patch %s: %v", patch, err)
-	}
-	return b
+	return string(after)
 }
 
 func labelsOf(b calc.Build) string {

@@ -101,6 +101,9 @@ func NewBuildView(in BuildInput) BuildView {
 		for i := range r.Strings {
 			v.Readings = append(v.Readings, stringReading(b, r, i))
 		}
+		for i := range r.Rails {
+			v.Readings = append(v.Readings, railReading(b, r, i))
+		}
 		supply := supplyReading(b, r)
 		v.Supply = &supply
 	} else {

@@ -37,6 +37,7 @@ const (
 	EntryDriver                     // the kind of driver: changes the driver's other entries
 	EntryControl                    // the kind of control voltage: likewise
 	EntryEnclosure                  // open or sealed: likewise
+	EntryRail                       // the kind of a base rail: likewise
 )
 
 // FromDrawer stands before the key of a part that the drawer has and the
@@ -64,6 +65,7 @@ type BuildForm struct {
 	Place   []EntryRow // ambient and enclosure
 	Limits  []EntryRow
 	Strings []StringForm
+	Rails   []RailForm
 	Runs    []RunForm
 }
 
@@ -84,6 +86,16 @@ type StackForm struct {
 	At       string // "/strings/0/leds/1"
 	Part     *Entry
 	Quantity *Entry
+}
+
+// RailForm is the entries of one base rail.
+type RailForm struct {
+	At   string // "/rails/0"
+	ID   string
+	Kind *Entry
+	Rows []EntryRow
+	Run  *Entry
+	On   string // the strings that hang on it, in words
 }
 
 // RunForm is the entries of one run.
@@ -115,6 +127,11 @@ func (f BuildForm) Entries() []*Entry {
 		list = append(list, s.Wanted, s.Driver)
 		rows(s.Rows)
 		list = append(list, s.Run)
+	}
+	for _, r := range f.Rails {
+		list = append(list, r.Kind)
+		rows(r.Rows)
+		list = append(list, r.Run)
 	}
 	for _, r := range f.Runs {
 		list = append(list, r.From, r.Length, r.Conductor)

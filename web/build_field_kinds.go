@@ -61,7 +61,7 @@ func wholeEntry(at, label string, kept int) *Entry {
 func choiceEntry(at, label, kept string, kind EntryKind, options []Option) *Entry {
 	e := newEntry(at, label, kept, kind)
 	e.Groups = []OptionGroup{{Options: options}}
-	e.Rebuilds = kind == EntryDriver || kind == EntryControl || kind == EntryEnclosure
+	e.Rebuilds = kind == EntryDriver || kind == EntryControl || kind == EntryEnclosure || kind == EntryRail
 	return e
 }
 

@@ -33,6 +33,9 @@ func NewBuildForm(b calc.Build, drawer []Stock) BuildForm {
 	for i := range b.Strings {
 		f.Strings = append(f.Strings, stringForm(b, i, drawer))
 	}
+	for i := range b.Rails {
+		f.Rails = append(f.Rails, railForm(b, i, drawer))
+	}
 	for i := range b.Runs {
 		f.Runs = append(f.Runs, runForm(b, i))
 	}
@@ -76,7 +79,7 @@ func stringForm(b calc.Build, i int, drawer []Stock) StringForm {
 		Label:    textEntry(at+"/label", "label", s.Label, ""),
 		Quantity: wholeEntry(at+"/quantity", "how many alike", s.Quantity),
 		Wanted:   withHint(wantedEntry(at+"/wanted", s.Wanted), "a current or a light: 20 mA, 55 lm"),
-		Driver:   choiceEntry(at+"/driver/kind", "driver", s.Driver.Kind, EntryDriver, driverKinds(s.Driver.Kind)),
+		Driver:   choiceEntry(at+"/driver/kind", "driver", s.Driver.Kind, EntryDriver, kindWords),
 		Rows:     driverRows(b, s.Driver, at+"/driver", drawer),
 		Run:      choiceEntry(at+"/fed_by", "fed by", s.FedBy, EntryRun, runOptions(b, "")),
 	}

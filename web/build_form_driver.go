@@ -17,23 +17,13 @@ var kindWords = []Option{
 	{calc.KindModule, "constant-current module"},
 }
 
-// Solved are the kinds of driver that can be computed, and so chosen.
-var Solved = []string{calc.KindResistor, calc.KindTwoTransistor, calc.KindFollowerSink, calc.KindReferenceSink}
-
-// driverKinds lists the kinds that can be chosen; one that a build has already
-// stays in its list.
-func driverKinds(has string) []Option {
-	var options []Option
+// DriverKinds are the kinds of driver that can be chosen.
+func DriverKinds() []string {
+	var kinds []string
 	for _, o := range kindWords {
-		chosen := o.Value == has
-		for _, kind := range Solved {
-			chosen = chosen || o.Value == kind
-		}
-		if chosen {
-			options = append(options, o)
-		}
+		kinds = append(kinds, o.Value)
 	}
-	return options
+	return kinds
 }
 
 // driverRows are the entries of a driver, by its kind.
@@ -54,14 +44,33 @@ func driverRows(b calc.Build, d calc.Driver, at string, drawer []Stock) []EntryR
 			resistorRow(at+"/pullup", "pull-up", f.Pullup))
 	case d.ReferenceSink != nil:
 		r := d.ReferenceSink
+		rows := []EntryRow{resistorRow(at+"/sense", "sense resistor", r.Sense)}
+		rows = append(rows, referenceRows(r.Reference, at+"/reference")...)
+		return append(rows,
+			resistorRow(at+"/bias", "bias resistor", r.Bias),
+			transistor("npn", "sink transistor", r.NPN, calc.TypeNPN))
+	case d.RailSink != nil:
+		r := d.RailSink
 		return []EntryRow{
 			resistorRow(at+"/sense", "sense resistor", r.Sense),
-			oneRow(withHint(spreadEntry(at+"/reference/volts", "reference", r.Reference.Volts, quantity.Volt), "at 25 °C; least / usual / most")),
-			oneRow(numberEntry(at+"/reference/tempco", "its drift", r.Reference.Tempco, quantity.VoltPerK)),
-			oneRow(numberEntry(at+"/reference/ohms", "its slope", r.Reference.Ohms, quantity.Ohm)),
-			resistorRow(at+"/bias", "bias resistor", r.Bias),
+			oneRow(choiceEntry(at+"/rail", "its base on", r.Rail, EntryChoice, railOptions(b))),
+			oneRow(withHint(optionalEntry(at+"/base_resistor", "base resistor", r.BaseResistor, quantity.Ohm, "none"), "keeps one open LED from loading the whole rail")),
 			transistor("npn", "sink transistor", r.NPN, calc.TypeNPN),
 		}
+	case d.OpampSink != nil:
+		o := d.OpampSink
+		rows := []EntryRow{resistorRow(at+"/sense", "sense resistor", o.Sense)}
+		rows = append(rows, controlRows(o.Control, at+"/control")...)
+		return append(rows,
+			transistor("opamp", "op-amp", o.Opamp, calc.TypeOpamp),
+			transistor("fet", "MOSFET", o.FET, calc.TypeNMOS))
+	case d.Regulator != nil:
+		return []EntryRow{
+			resistorRow(at+"/set", "set resistor", d.Regulator.Set),
+			transistor("regulator", "regulator", d.Regulator.Regulator, calc.TypeRegulator),
+		}
+	case d.ModuleInstance != nil:
+		return []EntryRow{transistor("module", "module", d.ModuleInstance.Module, calc.TypeModule)}
 	case d.TwoTransistor != nil:
 		t := d.TwoTransistor
 		return []EntryRow{
@@ -72,6 +81,15 @@ func driverRows(b calc.Build, d calc.Driver, at string, drawer []Stock) []EntryR
 		}
 	}
 	return nil
+}
+
+// referenceRows are the entries of a reference.
+func referenceRows(r calc.Reference, at string) []EntryRow {
+	return []EntryRow{
+		oneRow(withHint(spreadEntry(at+"/volts", "reference", r.Volts, quantity.Volt), "at 25 °C; least / usual / most")),
+		oneRow(numberEntry(at+"/tempco", "its drift", r.Tempco, quantity.VoltPerK)),
+		oneRow(numberEntry(at+"/ohms", "its slope", r.Ohms, quantity.Ohm)),
+	}
 }
 
 // The kinds of control voltage, as the picker names them.

@@ -18,7 +18,7 @@ func (f BuildForm) offer(b calc.Build, r calc.Report, suggestions map[int]calc.S
 		byName[e.Name] = e
 	}
 	for i := range f.Strings {
-		for _, below := range []string{"/wanted", "/driver/sense/ohms", "/driver/resistor/ohms", "/driver/control/volts"} {
+		for _, below := range []string{"/wanted", "/driver/sense/ohms", "/driver/resistor/ohms", "/driver/set/ohms", "/driver/control/volts"} {
 			if e := byName[f.Strings[i].At+below]; e != nil {
 				e.Live = true
 			}

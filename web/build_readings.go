@@ -63,6 +63,16 @@ func stringReading(b calc.Build, r calc.Report, i int) ReadingView {
 	return v
 }
 
+// railReading is every figure of rail i.
+func railReading(b calc.Build, r calc.Report, i int) ReadingView {
+	rail := r.Rails[i]
+	v := ReadingView{Name: "Rail " + rail.ID, Rows: []ReadingRow{ranged("rail", rail.Voltage, quantity.Volt, 3)}}
+	for _, d := range rail.Devices {
+		v.Rows = append(v.Rows, deviceRows(b, d)...)
+	}
+	return v
+}
+
 func leftRow(b calc.Build, s calc.StringReport) ReadingRow {
 	if s.Kind == calc.KindResistor {
 		return ranged("across the resistor", s.Headroom, quantity.Volt, 3)
