@@ -135,3 +135,18 @@ func TestAbsurdBuildsHaveFiniteFigures(t *testing.T) {
 		}
 	}
 }
+
+// A wish for a string on a rail is met by its sense resistor.
+func TestSuggestOnARail(t *testing.T) {
+	b := fourOnARail(true, 220)
+	b.Strings[2].Wanted = &calc.Wanted{Current: ptr(0.06)}
+	s, err := calc.Suggest(b, 2)
+	if err != nil {
+		t.Fatal(err)
+	}
+	if len(s.Choices) == 0 {
+		t.Fatal("no choices")
+	}
+	b.Strings[2].Driver.RailSink.Sense.Ohms = s.Exact
+	near(t, "current", check(t, b).Strings[2].Current.Typ, 0.06, 0.0003)
+}

@@ -61,6 +61,9 @@ func Suggest(b Build, i int) (Suggestion, error) {
 		return Suggestion{}, nil
 	}
 	t := tuner{l: l, at: corner{volts: l.Net.Voltage(l.Feed) + l.path*l.Draw(), ohms: l.path, ambient: b.Ambient.Typ, inside: inside}}
+	if l.rail != nil {
+		t.at.rail = l.rail.volts
+	}
 	w := b.Strings[i].Wanted
 	t.light = w.Current == nil
 	if t.light {
