@@ -134,9 +134,6 @@ func column(b calc.Build, i int, r calc.StringReport, c calc.Column, s Scale, f 
 	if w := b.Strings[i].Wanted; w != nil && w.Current != nil {
 		v.Wanted = "wanted " + quantity.Text(*w.Current, quantity.Amp)
 	}
-	if d := b.Strings[i].Driver.RailSink; d != nil {
-		v.Wanted = strings.TrimPrefix(v.Wanted+" · rail "+d.Rail, " · ")
-	}
 	if c.LeftOver < 0 {
 		v.Over = over(c, s, f)
 	}
