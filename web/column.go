@@ -40,15 +40,16 @@ type Band struct{ Y, Tall Px }
 type ColumnView struct {
 	Frame   Frame
 	Scale   Scale
-	Label   string // "A"
-	Times   string // "× 4"
-	Href    string // the string's fields
+	Label   string       // "A"
+	Times   string       // "× 4"
+	Href    string       // the string's fields
 	Parts   []ColumnPart // from the foot up
 	Notes   []Note
 	Over    *Over   // nil when the stack fits
 	Worst   *Worst  // nil when there is none to show
 	Current string  // "20.0 mA"
-	Wanted  string  // "wanted 34.0 mA"; "" when nothing is asked for
+	Wanted  string  // "wanted 34 mA"; "" when nothing is asked for
+	Met     string  // the outcome of that: a class
 	Heat    string  // "0.25 W in BC547B"
 	Left    string  // "3.05 V left over"
 	Outcome string  // "pass", "tight" or "fail": the class of what is left over
@@ -72,7 +73,9 @@ func NewPicture(b calc.Build, r calc.Report, corner string, f Frame) PictureView
 	for i, str := range r.Strings {
 		c := atCorner(str.Columns, corner)
 		feed = c.Supply
-		v.Columns = append(v.Columns, column(b, i, str, c, s, f))
+		view := column(b, i, str, c, s, f)
+		view.Met = met(r, i)
+		v.Columns = append(v.Columns, view)
 	}
 	v.Supply = s.Y(feed)
 	v.Feed = strconv.FormatFloat(feed, 'g', 4, 64)
@@ -84,6 +87,16 @@ func NewPicture(b calc.Build, r calc.Report, corner string, f Frame) PictureView
 		}
 	}
 	return v
+}
+
+// met is the outcome of the check whether string i gives what is wanted of it.
+func met(r calc.Report, i int) string {
+	for _, f := range r.Findings {
+		if f.Code == "wanted" && strings.HasPrefix(f.At+"/", "/strings/"+strconv.Itoa(i)+"/") {
+			return string(f.Severity)
+		}
+	}
+	return ""
 }
 
 func atCorner(c calc.Columns, corner string) calc.Column {

@@ -21,7 +21,7 @@ type Frame struct {
 
 // The frames in which there is room beside the blocks.
 var (
-	WideFrame   = frame("wide", 228, 24, 108)
+	WideFrame   = frame("wide", 228, 24, 114)
 	MiddleFrame = frame("middle", 181, 20, 80)
 )
 
@@ -220,8 +220,11 @@ var advances = [...]Px{
 
 // pad is what is left free at both sides of the words.
 func (f Frame) pad() Px {
-	if f.Notes {
+	switch {
+	case f.Block >= 100:
 		return 7
+	case f.Notes:
+		return 5
 	}
 	return 4
 }
