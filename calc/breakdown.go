@@ -71,8 +71,9 @@ const (
 //
 // "wire" is the drop in source resistance and cable, with the copper at its
 // temperature and the other strings drawing what they do in the corner;
-// "temperature" takes the rail's own drift along, since a follower's cancels
-// the sink's; "rail" is the rail at its worst for reasons of its own.
+// supply and temperature take the rail along, which shares both: a follower's
+// drift cancels the sink's. "rail" is the rail at its worst for reasons of its
+// own.
 //
 // It returns the errors of Check, and Invalid where there is no string i.
 //
@@ -122,11 +123,11 @@ type knob struct {
 
 // standing is a string's corner on the way from typical to the worst.
 type standing struct {
-	turn           []float64
-	volts, drop    float64 // [V] of the supply, and lost by what others draw
-	ohms, inside   float64 // [Ω], [°C]
-	ambient        float64 // [°C]
-	railTyp, above float64 // [V] of the rail, and how far it is off
+	turn            []float64
+	supply, ambient float64 // as turns
+	volts, drop     float64 // [V] of the supply, and lost by what others draw
+	ohms, inside    float64 // [Ω], [°C]
+	above           float64 // [V] that the rail is off
 }
 
 // shares walks to the string's worst corner in both orders.
@@ -174,25 +175,21 @@ func (p *plant) knobs(l *line, corner []float64) ([]knob, standing) {
 	v := p.build.Supply.Voltage
 	mid, end := r.at(0, 0), r.at(corner[n], corner[n+1])
 	supply := between(v, corner[n])
-	typical := standing{volts: v.Typ, drop: v.Typ - mid.volts, ohms: mid.ohms, inside: mid.inside, ambient: mid.ambient}
+	typical := standing{volts: v.Typ, drop: v.Typ - mid.volts, ohms: mid.ohms, inside: mid.inside}
 	drop := supply - end.volts
 	all := []knob{
-		{BreakdownItem{culpritSupply, "supply", 0, "/supply/voltage"}, func(s *standing) { s.volts = supply }, supply != v.Typ},
+		{BreakdownItem{culpritSupply, "supply", 0, "/supply/voltage"}, func(s *standing) { s.volts, s.supply = supply, corner[n] }, supply != v.Typ},
 		{BreakdownItem{culpritWire, "wire", 0, p.wirePointer()}, func(s *standing) { s.drop, s.ohms = drop, end.ohms }, drop != typical.drop || end.ohms != mid.ohms},
 	}
 	heat := knob{
 		BreakdownItem{culpritTemperature, "temperature", 0, "/ambient"},
-		func(s *standing) { s.ambient, s.inside = end.ambient, end.inside }, end.ambient != mid.ambient || end.inside != mid.inside,
+		func(s *standing) { s.ambient, s.inside = corner[n+1], end.inside }, end.ambient != mid.ambient || end.inside != mid.inside,
 	}
-	if l.rail == nil {
-		all = append(all, heat)
-	} else {
-		typical.railTyp = l.rail.atAmbient(0).Typ
-		hot := l.rail.atAmbient(corner[n+1])
-		above := between(hot, corner[n+2]) - hot.Typ
-		air := heat.turn
-		heat.turn = func(s *standing) { air(s); s.railTyp = hot.Typ }
-		all = append(all, heat, knob{
+	all = append(all, heat)
+	if l.rail != nil {
+		rail := l.rail.at(corner[n], corner[n+1])
+		above := between(rail, corner[n+2]) - rail.Typ
+		all = append(all, knob{
 			BreakdownItem{culpritRail, l.rail.name(), 0, fmt.Sprintf("/rails/%d", l.rail.index)},
 			func(s *standing) { s.above = above }, above != 0,
 		})
@@ -224,7 +221,10 @@ func (p *plant) wirePointer() string {
 // it has no stable temperature.
 func (l *line) leftAt(s *standing) (float64, error) {
 	l.turnTo(s.turn)
-	at := corner{volts: s.volts - s.drop, ohms: s.ohms, ambient: s.ambient, inside: s.inside, rail: s.railTyp + s.above}
+	at := corner{volts: s.volts - s.drop, ohms: s.ohms, inside: s.inside}
+	if l.rail != nil {
+		at.rail = l.rail.at(s.supply, s.ambient).Typ + s.above
+	}
 	err := l.solveAt(at)
 	var left leftOver
 	if err == nil {

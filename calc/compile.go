@@ -41,7 +41,7 @@ type line struct {
 	lights   []light.Source // by LED group; a zero flux is not known
 	assumed  []string       // parts whose figures were assumed, in words
 	started  bool
-	below    float64 // [V] that the last least tail stood below the base
+	clear    float64 // [V] that the last least tail stood above the sense resistor
 	saved    driver.State
 	turned   []float64 // how the knobs stand
 	typ      []float64 // figures with everything typical

@@ -262,7 +262,7 @@ func (l *line) corner(w *worst, r reach, turn []float64) (c corner, ok bool, err
 	n := len(l.Knobs)
 	c = r.at(turn[n], turn[n+1])
 	if l.rail != nil {
-		c.rail = between(l.rail.atAmbient(turn[n+1]), turn[n+2])
+		c.rail = between(l.rail.at(turn[n], turn[n+1]), turn[n+2])
 	}
 	err = l.solveAt(c)
 	if isRunaway(err) {
@@ -299,7 +299,12 @@ func (p *plant) reaches(air Spread) ([]reach, error) {
 	for i := range out {
 		out[i] = whole
 	}
-	if err := p.railReaches(out, whole); err != nil || !p.coupled() {
+	railReach := make([]reach, len(p.rails))
+	for k, r := range p.rails {
+		railReach[k] = whole
+		railReach[k].ohms = [3]float64{r.path, r.path, r.path}
+	}
+	if err := p.railReaches(out, railReach); err != nil || !p.coupled() {
 		return out, err
 	}
 	for side, ambient := range []float64{b.Ambient.Min, b.Ambient.Typ, b.Ambient.Max} {
@@ -316,10 +321,9 @@ func (p *plant) reaches(air Spread) ([]reach, error) {
 	for i, l := range p.strings {
 		out[i].volts.Typ = l.Net.Voltage(l.Feed) + l.path*l.Draw()
 	}
-	railReach := make([]reach, len(p.rails))
+	typical := make([]float64, len(p.rails)) // [V]
 	for k, r := range p.rails {
-		railReach[k] = whole
-		railReach[k].ohms = [3]float64{r.path, r.path, r.path}
+		typical[k] = r.volts
 		railReach[k].volts.Typ = r.Net.Voltage(r.Feed) + r.path*r.Draw()
 	}
 	draws := make([]*spread.Extremes, len(p.strings))
@@ -372,20 +376,21 @@ func (p *plant) reaches(air Spread) ([]reach, error) {
 		for _, knob := range r.Knobs {
 			knob.Turn(0)
 		}
-		if err := r.extremes(railReach[k]); err != nil {
-			return nil, err
-		}
+		r.volts = typical[k]
 	}
-	return out, nil
+	// What the strings take from the rail hangs on their feeds.
+	return out, p.railReaches(out, railReach)
 }
 
 // railReaches finds how far each rail goes, from the base currents that its
 // strings take at most and at least.
-func (p *plant) railReaches(strings []reach, whole reach) error {
+func (p *plant) railReaches(strings, rails []reach) error {
 	draws := drawCatalogue{}
-	for _, r := range p.rails {
+	for k, r := range p.rails {
 		typ := Exactly(r.volts)
-		r.reach = [3]Spread{typ, typ, typ}
+		for supply := range r.reach {
+			r.reach[supply] = [3]Spread{typ, typ, typ}
+		}
 		r.loads = Spread{}
 		for _, l := range r.lines {
 			x, err := draws.extremes(p, l, strings[l.index])
@@ -396,9 +401,7 @@ func (p *plant) railReaches(strings []reach, whole reach) error {
 			r.loads.Typ += l.quantity * x.Typ[1]
 			r.loads.Max += l.quantity * x.Max[1]
 		}
-		own := whole
-		own.ohms = [3]float64{r.path, r.path, r.path}
-		if err := r.extremes(own); err != nil {
+		if err := r.extremes(rails[k]); err != nil {
 			return err
 		}
 	}

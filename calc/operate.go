@@ -39,6 +39,10 @@ const (
 	baseRest = 5e-3
 	// needRest is the step in volts at which the least voltage is found.
 	needRest = 1e-4
+	// needStep is how far in volts that search goes down at once: saturation
+	// grows tenfold in 60 mV at room temperature, and above it the slope of an
+	// Early effect points far below.
+	needStep = 0.06
 	// usualSaturation is the collector-emitter voltage in volts from which the
 	// search for the least one starts.
 	usualSaturation = 0.15
@@ -323,14 +327,17 @@ func (l *line) headroom(volts, ohms float64) (leftOver, error) {
 
 // findNeed lowers the tail, with the LEDs detached, until the current has lost
 // 1 %. Saturation takes current away exponentially, so Newton's method goes by
-// the logarithm of the loss, kept inside a bracket whose upper end holds it.
+// the logarithm of the loss, kept inside a bracket whose upper end holds it and
+// whose lower end is the sense voltage at 99 %: a tail below that carries
+// nothing, and with a base that is held the transistor would swallow amperes
+// there.
 func (l *line) findNeed(r *leftOver, high float64) error {
 	net := l.Net
-	low, lost := 0.0, (1-held)*r.full
-	base := high
-	try := math.Min(high, l.senseVolts()+usualSaturation)
-	if l.below > 0 && base-l.below > 0 {
-		try = base - l.below
+	low, lost := held*l.senseVolts(), (1-held)*r.full
+	sense := l.senseVolts()
+	try := math.Min(high, sense+usualSaturation)
+	if l.clear > 0 {
+		try = math.Min(high, sense+l.clear)
 	}
 	for range treePatience {
 		net.Hold(l.Tail, try)
@@ -343,7 +350,7 @@ func (l *line) findNeed(r *leftOver, high float64) error {
 		} else {
 			high = try
 		}
-		next := try + math.Log(loss/lost)*loss/net.HeldSlope(l.Tail)
+		next := math.Max(try+math.Log(loss/lost)*loss/net.HeldSlope(l.Tail), try-needStep)
 		if !(next > low && next < high) {
 			next = (low + high) / 2
 		}
@@ -352,7 +359,7 @@ func (l *line) findNeed(r *leftOver, high float64) error {
 		}
 		try = next
 	}
-	l.below = base - try
+	l.clear = try - sense
 	r.need, r.sense = net.Voltage(l.Tail), l.senseVolts()
 	return nil
 }

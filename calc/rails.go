@@ -22,8 +22,9 @@ type railLine struct {
 	typ     []float64 // figures with everything typical
 	// loads are the least, typical and most base current of all strings [A].
 	loads Spread
-	// reach is the rail's voltage at the least, typical and highest ambient.
-	reach [3]Spread
+	// reach is the rail's voltage by supply and ambient, each at its least,
+	// typical and highest.
+	reach [3][3]Spread
 	worst *spread.Extremes
 }
 
@@ -83,10 +84,14 @@ func (r *railLine) feedAt(feed float64) error {
 // rail's voltage and stands in as a straight line of what it takes more for a
 // volt more, with which the rail is solved again. The rail itself stays free:
 // held at a voltage that is not its own, a follower's heat could run away
-// where in the whole it does not.
+// where in the whole it does not. Strings take more and a rail gives less the
+// higher it stands, so that every trial bounds the answer from one side; a step
+// past a bound, or one that does not come to rest, is taken half way between
+// them.
 func (r *railLine) balance() error {
 	defer r.Load(0, 0)
-	for k := range treePatience {
+	low, high, last := math.Inf(-1), math.Inf(1), math.Inf(1)
+	for range treePatience {
 		takes, slope := 0.0, 0.0
 		for _, l := range r.lines {
 			l.Net.Hold(l.Rail, r.volts)
@@ -104,10 +109,21 @@ func (r *railLine) balance() error {
 		if math.Abs(step) < treeRest {
 			return nil
 		}
-		if k > treePatience/2 {
-			step /= 2
+		if step > 0 {
+			low = r.volts
+		} else {
+			high = r.volts
 		}
-		r.volts += step
+		next := r.volts + step
+		restless := math.Abs(step) > math.Abs(last)/2 && !math.IsInf(high-low, 0)
+		if restless || !(next > low && next < high) {
+			next = (low + high) / 2
+		}
+		last = step
+		if high-low < treeRest {
+			return nil
+		}
+		r.volts = next
 	}
 	return &Unsolved{r.name(), errors.New("rail and strings do not settle")}
 }
@@ -161,10 +177,10 @@ func (r *railLine) solveFree(load, volts, ohms, air float64) error {
 	return nil
 }
 
-// extremes finds how far the rail's own values, its supply, the ambient and
-// the gain of the strings' transistors move its voltage, at each ambient, and
-// the worst case of its parts. The strings' base currents are taken at their
-// own extremes.
+// extremes finds how far the rail's own values and the gain of the strings'
+// transistors move its voltage, on each supply and at each ambient, which the
+// strings share with it, and the worst case of its parts. The strings' base
+// currents are taken at their own extremes.
 func (r *railLine) extremes(reach reach) error {
 	n := len(r.Knobs)
 	solve := func(turn []float64, load, supply, ambient float64) error {
@@ -177,16 +193,18 @@ func (r *railLine) extremes(reach reach) error {
 		c := reach.at(supply, ambient)
 		return r.solveFree(between(r.loads, load), c.volts, c.ohms, c.inside)
 	}
-	for side := range 3 {
-		x, err := spread.Find(n+2, 1, func(turn, out []float64) error {
-			err := solve(turn, turn[n], turn[n+1], float64(side-1))
-			out[0] = r.Net.Voltage(r.Out)
-			return err
-		})
-		if err != nil {
-			return err
+	for supply := range 3 {
+		for ambient := range 3 {
+			x, err := spread.Find(n+1, 1, func(turn, out []float64) error {
+				err := solve(turn, turn[n], float64(supply-1), float64(ambient-1))
+				out[0] = r.Net.Voltage(r.Out)
+				return err
+			})
+			if err != nil {
+				return err
+			}
+			r.reach[supply][ambient] = Spread{Min: x.Min[0], Typ: x.Typ[0], Max: x.Max[0]}
 		}
-		r.reach[side] = Spread{Min: x.Min[0], Typ: x.Typ[0], Max: x.Max[0]}
 	}
 	var err error
 	r.worst, err = spread.Find(n+3, r.figures(), func(turn, out []float64) error {
@@ -204,14 +222,15 @@ func (r *railLine) extremes(reach reach) error {
 	return err
 }
 
-// atAmbient returns the rail's reach at a turn of the ambient.
-func (r *railLine) atAmbient(turn float64) Spread {
-	mix := func(pick func(Spread) float64) float64 {
-		mid := pick(r.reach[1])
-		if turn < 0 {
-			return mid + (mid-pick(r.reach[0]))*turn
+// at returns the rail's reach at a turn of the supply and one of the ambient.
+func (r *railLine) at(supply, ambient float64) Spread {
+	mix := func(pick func(s Spread) float64) float64 {
+		var across Spread
+		for k, to := range []*float64{&across.Min, &across.Typ, &across.Max} {
+			row := &r.reach[k]
+			*to = between(Spread{Min: pick(row[0]), Typ: pick(row[1]), Max: pick(row[2])}, ambient)
 		}
-		return mid + (pick(r.reach[2])-mid)*turn
+		return between(across, supply)
 	}
 	return Spread{
 		Min: mix(func(s Spread) float64 { return s.Min }),
