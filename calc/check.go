@@ -20,6 +20,7 @@ func Check(b Build) (Report, error) {
 		return Report{}, err
 	}
 	p.remedy(&r)
+	p.followSupply(&r)
 	return r, nil
 }
 

@@ -47,6 +47,18 @@ type StringReport struct {
 	Voltages     Voltages       `json:"voltages"`
 	Devices      []DeviceReport `json:"devices"`
 	Columns      Columns        `json:"columns"`
+
+	// ControlFollowsSupply is nil where the control does not hang on the feed.
+	ControlFollowsSupply *FollowsSupply `json:"control_follows_supply,omitempty"`
+}
+
+// FollowsSupply is what the supply does to a string whose control is a pot or
+// a divider across the feed, everything else typical.
+type FollowsSupply struct {
+	PerVolt   float64 `json:"per_volt"`   // [A/V] more current for a volt more of supply, at its typical voltage
+	AtLowest  float64 `json:"at_lowest"`  // [A] at the supply's lowest voltage
+	AtHighest float64 `json:"at_highest"` // [A] at its highest
+	Swing     float64 `json:"swing"`      // [1] from lowest to highest, of the typical current
 }
 
 // Voltages are the typical node voltages of a string against its own return.

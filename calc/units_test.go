@@ -17,7 +17,7 @@ import (
 // a pair. The ratio and the plain number are 1.
 var unitsKnown = []string{
 	"1", "V", "A", "Ω", "W", "m", "m²", "°C", "K", "lm", "cd", "nm", "°", "eV",
-	"K/W", "V/K", "Ω/m", "1/K", "W/(m²·K)",
+	"K/W", "V/K", "A/V", "Ω/m", "1/K", "W/(m²·K)",
 	"A, V", "°C, share of max_current",
 }
 
