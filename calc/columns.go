@@ -5,19 +5,7 @@ package calc
 // one that heats the holding part most on a hot day with a high supply.
 func (p *plant) columns(r *Report) error {
 	for i, l := range p.strings {
-		n := len(l.Knobs)
-		usual := make([]float64, l.turns())
-		cold, hot := make([]float64, l.turns()), make([]float64, l.turns())
-		for k := range n {
-			cold[k] = float64(l.worst.Lowest[figHeadroom][k])
-			hot[k] = float64(l.worst.Highest[figDevices+2*l.Holder][k])
-		}
-		cold[n], cold[n+1] = -1, -1
-		hot[n], hot[n+1] = 1, 1
-		if l.rail != nil {
-			cold[n+2] = float64(l.worst.Lowest[figHeadroom][n+2])
-			hot[n+2] = float64(l.worst.Highest[figDevices+2*l.Holder][n+2])
-		}
+		usual, cold, hot := l.pictured()
 		c := &r.Strings[i].Columns
 		v := p.build.Supply.Voltage
 		for _, at := range []struct {
@@ -37,6 +25,23 @@ func (p *plant) columns(r *Report) error {
 		l.toTypical()
 	}
 	return nil
+}
+
+// pictured are the three corners of the pictures, as turns.
+func (l *line) pictured() (usual, cold, hot []float64) {
+	n := len(l.Knobs)
+	usual, cold, hot = make([]float64, l.turns()), make([]float64, l.turns()), make([]float64, l.turns())
+	for k := range n {
+		cold[k] = float64(l.worst.Lowest[figHeadroom][k])
+		hot[k] = float64(l.worst.Highest[figDevices+2*l.Holder][k])
+	}
+	cold[n], cold[n+1] = -1, -1
+	hot[n], hot[n+1] = 1, 1
+	if l.rail != nil {
+		cold[n+2] = float64(l.worst.Lowest[figHeadroom][n+2])
+		hot[n+2] = float64(l.worst.Highest[figDevices+2*l.Holder][n+2])
+	}
+	return usual, cold, hot
 }
 
 func (l *line) column(turn []float64, supply float64) (Column, error) {

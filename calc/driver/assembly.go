@@ -54,6 +54,8 @@ type Board struct {
 	stack    circuit.LEDsID
 	tail     circuit.Node
 	start    func(feed float64)
+	setPot   func(upper, lower float64)
+	setVolts func(typ float64)
 	upstream circuit.Node
 	cable    circuit.ResistorID
 	behind   bool

@@ -35,13 +35,14 @@ func RailSink(leds []LED, r OnRail) *Assembly {
 // Rail is a base rail as a circuit: Out is the rail itself.
 type Rail struct {
 	Board
-	Out  circuit.Node
-	line circuit.ResistorID
+	Out     circuit.Node
+	Control circuit.Node // circuit.None without
+	line    circuit.ResistorID
 }
 
 // newRail makes a rail's feed and its node, with what stands for its strings.
 func newRail() *Rail {
-	r := &Rail{Board: newBoard()}
+	r := &Rail{Board: newBoard(), Control: circuit.None}
 	r.Out = r.Net.Node("rail")
 	r.line = r.Net.Resistor(r.Out, circuit.Ground, 1)
 	r.Net.Switch(r.line, false)
@@ -64,6 +65,7 @@ func FollowerRail(control Control, pnp Transistor, pullup Resistance) *Rail {
 	r := newRail()
 	c := r.Net
 	base := r.control(control)
+	r.Control = base
 	r.transistor("follower_transistor", circuit.Ground, base, r.Out, pnp, true)
 	r.resistor("pullup_resistor", r.Feed, r.Out, pullup)
 	r.start = func(feed float64) {
