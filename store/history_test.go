@@ -197,6 +197,18 @@ func TestPruningSparesWhatUndoCanReach(t *testing.T) {
 	}
 }
 
+func TestPruningLetsGoOfWhatAnEditCutOff(t *testing.T) {
+	s := newStore(t)
+	s.Remember(3)
+	b := create(t, s, 1)
+	for act := range strings.FieldsSeq("2 3 u u 4 u 5 u 6") { // 2 and 3 are cut off by 4
+		next, err := perform(t, s, b, act)
+		must(t, err)
+		b = next
+	}
+	checkRevisions(t, s, b.ID, 8, 10)
+}
+
 func TestKeptRevisionsStayUntilLetGo(t *testing.T) {
 	s := newStore(t)
 	s.Remember(3)

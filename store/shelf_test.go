@@ -20,7 +20,7 @@ type searchCase struct {
 func TestSearch(t *testing.T) {
 	shelf := []store.Summary{
 		{Title: "GRÖßE 50% Kirchturm", Client: "Müller & Söhne"},
-		{Title: "Tide-table case", Site: "Ferry waiting room", Tags: []string{"display case", "marine"}},
+		{Title: "Tide-table case", Site: "Ferry waiting room", Tags: []string{"display case", "marine"}, Search: "0.75 mm² \ufb01tting"},
 		{Title: "HARBOUR letters", Client: "Ångström", Search: "white-2835 bc547b 4.7 kΩ"},
 		{Title: "snake_case C:\\lamps", Tags: []string{"Ελλάς", "İstanbul"}},
 	}
@@ -35,6 +35,9 @@ func TestSearch(t *testing.T) {
 		{"accents left out", "angstrom", []string{"HARBOUR letters"}},
 		{"the unit sign for the letter", "ÅNGSTRÖM", []string{"HARBOUR letters"}},
 		{"ohm sign for omega", "k\u2126", []string{"HARBOUR letters"}},
+		{"a raised figure", "mm2", []string{"Tide-table case"}},
+		{"a ligature", "fitting", []string{"Tide-table case"}},
+		{"full-width letters", "\uff34\uff29\uff24\uff25", []string{"Tide-table case"}},
 		{"both forms of sigma", "ΕΛΛΆΣ", []string{"snake_case C:\\lamps"}},
 		{"dotted capital i", "istanbul", []string{"snake_case C:\\lamps"}},
 		{"inside a word", "irchtu", []string{"GRÖßE 50% Kirchturm"}},
