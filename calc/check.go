@@ -34,7 +34,7 @@ func examine(b *Build) (Report, *plant, error) {
 	for _, l := range p.strings {
 		l.turned = make([]float64, len(l.Knobs))
 	}
-	inside, err := p.operateOrCold(&r)
+	inside, err := p.operateOrCold()
 	if err != nil {
 		return Report{}, nil, err
 	}
@@ -49,7 +49,7 @@ func examine(b *Build) (Report, *plant, error) {
 // operateOrCold solves the typical point. A string whose heat has no stable
 // temperature is a finding; it is then solved as if it stayed cold, so that
 // the rest of the report stands.
-func (p *plant) operateOrCold(r *Report) (inside float64, err error) {
+func (p *plant) operateOrCold() (inside float64, err error) {
 	b := p.build
 	for range len(p.strings) + 1 {
 		inside, err = p.operate(b.Supply.Voltage.Typ, b.Ambient.Typ)

@@ -2,12 +2,14 @@ package calc_test
 
 import (
 	"fmt"
+	"maps"
 	"testing"
 
 	"lanternbook/calc"
 )
 
-func ptr(v float64) *float64 { return &v }
+//go:fix inline
+func ptr(v float64) *float64 { return new(v) }
 
 // plainLED is an LED of nearly constant forward voltage, as textbooks have it.
 func plainLED(volts float64) calc.Part {
@@ -24,9 +26,7 @@ func onSupply(volts float64, d calc.Driver, led calc.Part, parts map[string]calc
 		Strings: []calc.String{{Label: "A", Quantity: 1, LEDs: []calc.LEDStack{{Part: "led", Quantity: 1}}, Driver: d}},
 		Parts:   map[string]calc.Part{"led": led},
 	}
-	for key, part := range parts {
-		b.Parts[key] = part
-	}
+	maps.Copy(b.Parts, parts)
 	return b
 }
 
@@ -44,7 +44,7 @@ func finding(t *testing.T, r calc.Report, code string) calc.Finding {
 func lm317(adjust float64) calc.Part {
 	return calc.Part{Type: calc.TypeRegulator, Regulator: &calc.Regulator{
 		ReferenceVoltage: &calc.Spread{Min: 1.2, Typ: 1.25, Max: 1.3}, AdjustmentCurrent: &calc.Spread{Min: adjust, Typ: adjust, Max: adjust},
-		Dropout: [][2]float64{{0, 2}}, LeastLoad: ptr(0.01), MaxInputOutput: ptr(40), MaxCurrent: ptr(1.5),
+		Dropout: [][2]float64{{0, 2}}, LeastLoad: new(0.01), MaxInputOutput: ptr(40), MaxCurrent: new(1.5),
 		MaxPower: ptr(2), MaxJunction: ptr(125), RthJunctionAmbient: ptr(50),
 	}}
 }
@@ -109,9 +109,9 @@ func opampBuild(volts, control, ohms float64) calc.Build {
 		Control: calc.Control{Volts: &calc.Spread{Min: control, Typ: control, Max: control}}, Opamp: "amp", FET: "fet",
 		Sense: calc.Resistor{Ohms: ohms, Tolerance: 0.01, Watts: ptr(1)},
 	}}, plainLED(3), map[string]calc.Part{
-		"amp": {Type: calc.TypeOpamp, Opamp: &calc.Opamp{OffsetVoltage: ptr(0.003), InputLow: ptr(0), InputHigh: ptr(1.5), OutputLow: ptr(0.02), OutputHigh: ptr(1.5), SupplyCurrent: ptr(0.0007)}},
+		"amp": {Type: calc.TypeOpamp, Opamp: &calc.Opamp{OffsetVoltage: new(0.003), InputLow: ptr(0), InputHigh: new(1.5), OutputLow: new(0.02), OutputHigh: new(1.5), SupplyCurrent: new(0.0007)}},
 		"fet": {Type: calc.TypeNMOS, MOSFET: &calc.MOSFET{
-			MaxDrainSourceVoltage: ptr(60), MaxDrainCurrent: ptr(0.2), MaxPower: ptr(0.35), MaxJunction: ptr(150), RthJunctionAmbient: ptr(357),
+			MaxDrainSourceVoltage: ptr(60), MaxDrainCurrent: new(0.2), MaxPower: new(0.35), MaxJunction: ptr(150), RthJunctionAmbient: ptr(357),
 			GateThreshold: &calc.Spread{Min: 0.8, Typ: 2.1, Max: 3}, OnResistance: ptr(5), OnResistanceAt: ptr(10),
 		}},
 	})
@@ -151,11 +151,11 @@ func TestOpampRunsOutOfGate(t *testing.T) {
 
 func TestModules(t *testing.T) {
 	linear := calc.Part{Type: calc.TypeModule, Module: &calc.Module{
-		Current: &calc.Spread{Min: 0.019, Typ: 0.02, Max: 0.021}, Dropout: ptr(1.4),
-		InputVoltage: &calc.Spread{Min: 5, Typ: 24, Max: 30}, OutputVoltage: &calc.Spread{Min: 2, Typ: 9, Max: 25}, MaxPower: ptr(0.3),
+		Current: &calc.Spread{Min: 0.019, Typ: 0.02, Max: 0.021}, Dropout: new(1.4),
+		InputVoltage: &calc.Spread{Min: 5, Typ: 24, Max: 30}, OutputVoltage: &calc.Spread{Min: 2, Typ: 9, Max: 25}, MaxPower: new(0.3),
 	}}
 	switching := calc.Part{Type: calc.TypeModule, Module: &calc.Module{
-		Current: &calc.Spread{Min: 0.33, Typ: 0.35, Max: 0.37}, Dropout: ptr(1), Switching: true, Efficiency: ptr(0.9),
+		Current: &calc.Spread{Min: 0.33, Typ: 0.35, Max: 0.37}, Dropout: ptr(1), Switching: true, Efficiency: new(0.9),
 		InputVoltage: &calc.Spread{Min: 5, Typ: 24, Max: 30}, OutputVoltage: &calc.Spread{Min: 2, Typ: 9, Max: 25}, MaxPower: ptr(2),
 	}}
 	d := calc.Driver{Kind: calc.KindModule, ModuleInstance: &calc.ModuleDriver{Module: "module"}}
@@ -165,8 +165,8 @@ func TestModules(t *testing.T) {
 	near(t, "least", s.Current.Min, 0.019, 1e-7)
 	near(t, "heat", s.Devices[1].Power.Typ, 0.02*(12-s.LEDVoltage.Typ), 1e-7)
 	near(t, "left over", s.Headroom.Typ, 12-s.LEDVoltage.Typ-1.4, 0.03)
-	if s := check(t, onSupply(10, d, plainLED(9), map[string]calc.Part{"module": linear})).Strings[0]; s.Regulates {
-		t.Errorf("10 V on 9 V and a dropout of 1.4 V regulates: %v", s.Headroom)
+	if short := check(t, onSupply(10, d, plainLED(9), map[string]calc.Part{"module": linear})).Strings[0]; short.Regulates {
+		t.Errorf("10 V on 9 V and a dropout of 1.4 V regulates: %v", short.Headroom)
 	}
 	if f := finding(t, check(t, onSupply(34, d, plainLED(9), map[string]calc.Part{"module": linear})), "module-input"); f.Severity != calc.Fail {
 		t.Errorf("34 V into a window up to 30 V: %s", f.Severity)

@@ -109,7 +109,6 @@ type reach struct {
 	volts           Spread // [V] behind the string's own share of the cable
 	ambient, inside Spread // [°C]
 	ohms            [3]float64
-	rail            *railLine // nil without
 }
 
 // between returns a spread's value at a turn from −1 to 1.
@@ -194,12 +193,11 @@ func (l *line) search(r reach, like *worst) (worst, error) {
 	if like != nil {
 		likeAll, likeLeft = like.Extremes, like.left
 	}
-	var err error
-	w.Extremes, err = find(likeAll, l.figures(), func(turn, out []float64) error {
-		_, ok, err := l.corner(&w, r, turn)
+	all, err := find(likeAll, l.figures(), func(turn, out []float64) error {
+		_, ok, wrong := l.corner(&w, r, turn)
 		if !ok {
 			fillNaN(out)
-			return err
+			return wrong
 		}
 		l.collect(out)
 		w.fluxKnown = w.fluxKnown && !math.IsNaN(out[figFlux])
@@ -208,20 +206,21 @@ func (l *line) search(r reach, like *worst) (worst, error) {
 	if err != nil {
 		return w, err
 	}
+	w.Extremes = all
 	// What is left over costs several solutions; it gets a search of its own.
 	left, err := find(likeLeft, 1, func(turn, out []float64) error {
-		c, ok, err := l.corner(&w, r, turn)
+		c, ok, wrong := l.corner(&w, r, turn)
 		fillNaN(out)
 		if !ok {
-			return err
+			return wrong
 		}
-		left, err := l.headroom(c.volts, c.ohms)
-		if isRunaway(err) {
-			w.runaway = err
+		over, wrong := l.headroom(c.volts, c.ohms)
+		if isRunaway(wrong) {
+			w.runaway = wrong
 			return nil
 		}
-		out[0] = left.headroom
-		return err
+		out[0] = over.headroom
+		return wrong
 	})
 	if err != nil {
 		return w, err

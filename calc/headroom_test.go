@@ -25,7 +25,7 @@ func holders() map[string]calc.Build {
 	out[calc.KindRegulator] = onSupply(24, calc.Driver{Kind: calc.KindRegulator, Regulator: &calc.RegulatorDriver{Regulator: "reg", Set: calc.Resistor{Ohms: 62, Watts: ptr(1)}}},
 		plainLED(9), map[string]calc.Part{"reg": lm317(50e-6)})
 	out[calc.KindModule] = onSupply(24, calc.Driver{Kind: calc.KindModule, ModuleInstance: &calc.ModuleDriver{Module: "module"}},
-		plainLED(9), map[string]calc.Part{"module": {Type: calc.TypeModule, Module: &calc.Module{Current: &calc.Spread{Min: 0.02, Typ: 0.02, Max: 0.02}, Dropout: ptr(1.4)}}})
+		plainLED(9), map[string]calc.Part{"module": {Type: calc.TypeModule, Module: &calc.Module{Current: &calc.Spread{Min: 0.02, Typ: 0.02, Max: 0.02}, Dropout: new(1.4)}}})
 	return out
 }
 

@@ -206,15 +206,15 @@ func (r *railLine) extremes(reach reach) error {
 			r.reach[supply][ambient] = Spread{Min: x.Min[0], Typ: x.Typ[0], Max: x.Max[0]}
 		}
 	}
-	var err error
-	r.worst, err = spread.Find(n+3, r.figures(), func(turn, out []float64) error {
-		err := solve(turn, turn[n], turn[n+1], turn[n+2])
+	worst, err := spread.Find(n+3, r.figures(), func(turn, out []float64) error {
+		wrong := solve(turn, turn[n], turn[n+1], turn[n+2])
 		r.collect(out)
 		if r.spec.Kind != "buffered-reference" {
 			out[railSpare] = out[railDrive] - between(r.loads, turn[n])
 		}
-		return err
+		return wrong
 	})
+	r.worst = worst
 	for k, knob := range r.Knobs {
 		knob.Turn(0)
 		r.turned[k] = 0

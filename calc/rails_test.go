@@ -17,25 +17,25 @@ func fourOnARail(buffered bool, baseOhms float64) calc.Build {
 		TestCurrent: 0.06, ForwardVoltage: calc.Exactly(2.95), Model: &calc.LEDModel{Is: 2e-20, N: 2.5, Rs: 2.2},
 	}}
 	npn := calc.Part{Type: calc.TypeNPN, Transistor: &calc.Transistor{
-		MaxCollectorEmitterVoltage: ptr(45), MaxCollectorCurrent: ptr(0.5), MaxPower: ptr(0.6), MaxJunction: ptr(150),
+		MaxCollectorEmitterVoltage: ptr(45), MaxCollectorCurrent: new(0.5), MaxPower: new(0.6), MaxJunction: ptr(150),
 		HFE: &calc.Spread{Min: 200, Typ: 200, Max: 200}, VBEOn: &calc.VBEOn{Volts: calc.Exactly(0.7), At: 0.04},
 	}}
 	b := calc.Build{
 		Format: calc.BuildFormat, Title: "rail", Ambient: calc.Exactly(25),
 		Supply: calc.Supply{Voltage: calc.Exactly(24), MaxCurrent: ptr(1)},
 		Rails: []calc.Rail{{
-			ID: "main", Kind: "reference", Reference: &calc.Reference{Volts: calc.Exactly(2.7), Ohms: 20}, Bias: &calc.Resistor{Ohms: 2200, Watts: ptr(0.5)},
+			ID: "main", Kind: "reference", Reference: &calc.Reference{Volts: calc.Exactly(2.7), Ohms: 20}, Bias: &calc.Resistor{Ohms: 2200, Watts: new(0.5)},
 		}},
 		Parts: map[string]calc.Part{"white": white, "npn": npn},
 	}
 	if buffered {
 		b.Rails[0] = calc.Rail{
-			ID: "main", Kind: "buffered-reference", Reference: &calc.Reference{Volts: calc.Exactly(3.3), Ohms: 20}, Bias: &calc.Resistor{Ohms: 2200, Watts: ptr(0.5)},
-			NPN: "npn", Pulldown: &calc.Resistor{Ohms: 3300, Watts: ptr(0.25)},
+			ID: "main", Kind: "buffered-reference", Reference: &calc.Reference{Volts: calc.Exactly(3.3), Ohms: 20}, Bias: &calc.Resistor{Ohms: 2200, Watts: new(0.5)},
+			NPN: "npn", Pulldown: &calc.Resistor{Ohms: 3300, Watts: new(0.25)},
 		}
 	}
 	for _, label := range []string{"1", "2", "3", "4"} {
-		sink := &calc.RailSink{Rail: "main", NPN: "npn", Sense: calc.Resistor{Ohms: 47, Watts: ptr(0.25)}}
+		sink := &calc.RailSink{Rail: "main", NPN: "npn", Sense: calc.Resistor{Ohms: 47, Watts: new(0.25)}}
 		if baseOhms > 0 {
 			sink.BaseResistor = &baseOhms
 		}
@@ -139,7 +139,7 @@ func TestAbsurdBuildsHaveFiniteFigures(t *testing.T) {
 // A wish for a string on a rail is met by its sense resistor.
 func TestSuggestOnARail(t *testing.T) {
 	b := fourOnARail(true, 220)
-	b.Strings[2].Wanted = &calc.Wanted{Current: ptr(0.06)}
+	b.Strings[2].Wanted = &calc.Wanted{Current: new(0.06)}
 	s, err := calc.Suggest(b, 2)
 	if err != nil {
 		t.Fatal(err)

@@ -103,7 +103,7 @@ func deviceOf(a *driver.Assembly, role string) driver.Device {
 // ohmsIn reads a circuit's name for a resistance: "RE68" is 68 Ω.
 func ohmsIn(t *testing.T, name, prefix string) float64 {
 	t.Helper()
-	for _, word := range strings.Split(name, "_") {
+	for word := range strings.SplitSeq(name, "_") {
 		if rest, ok := strings.CutPrefix(word, prefix); ok {
 			return number(t, rest)
 		}

@@ -9,7 +9,7 @@ func Usual(b Build) (Report, error) {
 		return Report{}, err
 	}
 	r := Report{Format: ReportFormat, Verdict: Unknown, Strings: []StringReport{}, Rails: []RailReport{}, Runs: []RunReport{}, Findings: []Finding{}}
-	inside, err := p.operateOrCold(&r)
+	inside, err := p.operateOrCold()
 	if err != nil {
 		return Report{}, err
 	}

@@ -144,13 +144,12 @@ type RegulatorID int
 // series circuit does not care which way round it is, so it serves above the
 // LEDs as well.
 type regulator struct {
-	in, out             Node
-	reference, adjust   float64 // [V], [A]
-	ohms                float64
-	dropout             [][2]float64 // [A, V], rising in current
-	rth                 float64
-	mode                mode
-	current, drop, grow float64
+	in, out           Node
+	reference, adjust float64 // [V], [A]
+	ohms              float64
+	dropout           [][2]float64 // [A, V], rising in current
+	rth               float64
+	mode              mode
 }
 
 // Regulator adds a regulator with its reference in volts, its adjustment

@@ -30,7 +30,6 @@ func BJTDefaults() BJT {
 // with it, ready for evaluation.
 type BJTAt struct {
 	celsius                  float64
-	vt                       float64
 	is, bf, br, ise, isc     float64
 	nvf, nvr, nve, nvc       float64 // n·VT of each junction term
 	slope                    float64 // d ln(is)/dT
@@ -77,7 +76,7 @@ func (a *BJTAt) Move(b *BJT, celsius float64) {
 	if b.Xtb != 0 {
 		gain = math.Exp(b.Xtb * logRatio)
 	}
-	a.celsius, a.kelvin, a.vt = celsius, kelvin, vt
+	a.celsius, a.kelvin = celsius, kelvin
 	a.is = b.Is * math.Exp(logIs)
 	a.bf, a.br = b.Bf*gain, b.Br*gain
 	if a.hasIse {

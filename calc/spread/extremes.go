@@ -197,7 +197,7 @@ const (
 func (x *Extremes) try(corner []int8) error {
 	key := make([]byte, len(corner))
 	for k, s := range corner {
-		key[k] = byte(s + 1)
+		key[k] = '0' + byte(s+1) //nolint:gosec // −1, 0 and 1 only
 		x.turn[k] = float64(s)
 	}
 	if known, ok := x.tried[string(key)]; ok {
