@@ -34,8 +34,7 @@ func sendReportOn(w http.ResponseWriter, document []byte) error {
 		return err
 	}
 	report, err := checked(b)
-	var unsolved *calc.Unsolved
-	if errors.As(err, &unsolved) {
+	if unsolved, is := errors.AsType[*calc.Unsolved](err); is {
 		return &refusal{status: http.StatusUnprocessableEntity, title: unsolvable,
 			detail: unsolved.Error(), faults: calc.Invalid{unsolvedFault(b, unsolved)}}
 	}

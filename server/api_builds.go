@@ -115,8 +115,7 @@ func (s *server) patchBuild(w http.ResponseWriter, r *http.Request) error {
 		return changedMeanwhile(before.Revision)
 	}
 	after, _, _, err := s.change(r.Context(), before.ID, before.Revision, patch)
-	var stale *store.Stale
-	if errors.As(err, &stale) {
+	if stale, is := errors.AsType[*store.Stale](err); is {
 		return changedMeanwhile(stale.Have)
 	}
 	if err != nil {

@@ -31,6 +31,7 @@ func written(t *testing.T, name, document string) string {
 
 // withoutRating is shelfLight with nothing to judge its LEDs' heat by.
 func withoutRating(t *testing.T) string {
+	t.Helper()
 	return strings.Replace(shelfLight(t), `"max_junction": 100, `, "", 1)
 }
 

@@ -41,7 +41,7 @@ func execute(t *testing.T, path, statements string) {
 	if err != nil {
 		t.Fatal(err)
 	}
-	defer db.Close()
+	defer func() { _ = db.Close() }()
 	if _, err := db.ExecContext(t.Context(), statements); err != nil {
 		t.Fatal(err)
 	}

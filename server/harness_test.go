@@ -34,28 +34,28 @@ type answer struct {
 
 // openShop starts the program on an empty store. Its clock starts at a fixed
 // day and goes on by one second with every reading.
-func openShop(t testing.TB) *shop {
-	t.Helper()
-	return openShopOn(t, filepath.Join(t.TempDir(), "lanternbook.db"))
+func openShop(tb testing.TB) *shop {
+	tb.Helper()
+	return openShopOn(tb, filepath.Join(tb.TempDir(), "lanternbook.db"))
 }
 
-func openShopOn(t testing.TB, path string) *shop {
-	t.Helper()
+func openShopOn(tb testing.TB, path string) *shop {
+	tb.Helper()
 	var ticks atomic.Int64
 	now := func() time.Time {
 		return time.Date(2026, 3, 14, 9, 0, 0, 0, time.UTC).Add(time.Duration(ticks.Add(1)) * time.Second)
 	}
 	st, err := store.Open(context.Background(), path, now)
 	if err != nil {
-		t.Fatal(err)
+		tb.Fatal(err)
 	}
 	log := &lockedLog{}
 	s := newServer(st, now, slog.New(slog.NewTextHandler(log, nil)), "127.0.0.1:0")
-	p := &shop{t: t, s: s, log: log, http: httptest.NewServer(s.routes())}
-	t.Cleanup(func() {
+	p := &shop{t: tb, s: s, log: log, http: httptest.NewServer(s.routes())}
+	tb.Cleanup(func() {
 		p.http.Close()
 		if err := st.Close(); err != nil {
-			t.Error(err)
+			tb.Error(err)
 		}
 	})
 	return p
@@ -68,11 +68,11 @@ func (p *shop) do(method, target, body string, headers ...string) answer {
 	return ask(p.t, p.http.URL, method, target, body, headers...)
 }
 
-func ask(t testing.TB, base, method, target, body string, headers ...string) answer {
-	t.Helper()
+func ask(tb testing.TB, base, method, target, body string, headers ...string) answer {
+	tb.Helper()
 	r, err := http.NewRequestWithContext(context.Background(), method, base+target, strings.NewReader(body))
 	if err != nil {
-		t.Fatal(err)
+		tb.Fatal(err)
 	}
 	for i := 0; i+1 < len(headers); i += 2 {
 		if headers[i] == "Host" {
@@ -83,12 +83,12 @@ func ask(t testing.TB, base, method, target, body string, headers ...string) ans
 	}
 	response, err := plainTransport.RoundTrip(r)
 	if err != nil {
-		t.Fatalf("%s %s: %v", method, target, err)
+		tb.Fatalf("%s %s: %v", method, target, err)
 	}
-	defer response.Body.Close()
+	defer func() { _ = response.Body.Close() }()
 	content, err := io.ReadAll(response.Body)
 	if err != nil {
-		t.Fatalf("%s %s: %v", method, target, err)
+		tb.Fatalf("%s %s: %v", method, target, err)
 	}
 	return answer{response.StatusCode, response.Header, string(content)}
 }
@@ -113,36 +113,36 @@ func (p *shop) patch(address, etag, operations string) answer {
 }
 
 // wantStatus ends the test when the answer has another status.
-func (a answer) wantStatus(t testing.TB, want int) {
-	t.Helper()
+func (a answer) wantStatus(tb testing.TB, want int) {
+	tb.Helper()
 	if a.status != want {
-		t.Fatalf("status %d, want %d; body: %.400s", a.status, want, a.body)
+		tb.Fatalf("status %d, want %d; body: %.400s", a.status, want, a.body)
 	}
 }
 
 // decode reads the body as JSON.
-func decode[T any](t testing.TB, a answer) T {
-	t.Helper()
+func decode[T any](tb testing.TB, a answer) T {
+	tb.Helper()
 	var v T
 	if err := json.Unmarshal([]byte(a.body), &v); err != nil {
-		t.Fatalf("body is not the JSON expected: %v; %.400s", err, a.body)
+		tb.Fatalf("body is not the JSON expected: %v; %.400s", err, a.body)
 	}
 	return v
 }
 
 // wantProblem asserts a problem document with this status and this field.
-func (a answer) wantProblem(t testing.TB, status int, field string) problem {
-	t.Helper()
-	a.wantStatus(t, status)
+func (a answer) wantProblem(tb testing.TB, status int, field string) problem {
+	tb.Helper()
+	a.wantStatus(tb, status)
 	if got := a.header.Get("Content-Type"); got != "application/problem+json" {
-		t.Errorf("Content-Type %q, want application/problem+json", got)
+		tb.Errorf("Content-Type %q, want application/problem+json", got)
 	}
-	p := decode[problem](t, a)
+	p := decode[problem](tb, a)
 	if p.Status != status || p.Title == "" || p.Detail == "" {
-		t.Errorf("problem %+v, want status %d, a title and a detail", p, status)
+		tb.Errorf("problem %+v, want status %d, a title and a detail", p, status)
 	}
 	if p.Field != field {
-		t.Errorf("field %q, want %q; errors %v", p.Field, field, p.Errors)
+		tb.Errorf("field %q, want %q; errors %v", p.Field, field, p.Errors)
 	}
 	return p
 }

@@ -39,7 +39,7 @@ func (e *edited) edit(client *http.Client, base, note string) (bool, error) {
 	if err != nil {
 		return false, nil
 	}
-	defer response.Body.Close()
+	defer func() { _ = response.Body.Close() }()
 	var document strings.Builder
 	whole := copyAll(&document, response.Body)
 	if response.StatusCode != http.StatusOK {
@@ -126,7 +126,7 @@ func (e *edited) verify(t *testing.T, data string) {
 	if err != nil {
 		t.Fatal(err)
 	}
-	defer st.Close()
+	defer func() { _ = st.Close() }() // only read
 	id, err := strconv.ParseInt(e.address[strings.LastIndex(e.address, "/")+1:], 10, 64)
 	if err != nil {
 		t.Fatal(err)

@@ -40,7 +40,7 @@ func run(ctx context.Context, args []string, stdin io.Reader, stdout, stderr io.
 		return exitUnusable
 	}
 	if command == "help" || isHelp(command) {
-		fmt.Fprint(stdout, helpText())
+		say(stdout, "%s", helpText())
 		return exitOK
 	}
 	complain(stderr, fmt.Sprintf("there is no command %q; help lists them", command))
@@ -52,5 +52,10 @@ func isHelp(arg string) bool { return arg == "-h" || arg == "-help" || arg == "-
 
 // complain writes one sentence for the person at the terminal.
 func complain(stderr io.Writer, sentence string) {
-	fmt.Fprintf(stderr, "lanternbook: %s\n", sentence)
+	say(stderr, "lanternbook: %s\n", sentence)
+}
+
+// say writes to the terminal. When that fails nobody is there to be told.
+func say(to io.Writer, format string, args ...any) {
+	_, _ = fmt.Fprintf(to, format, args...)
 }

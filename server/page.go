@@ -68,7 +68,7 @@ func fromScript(r *http.Request) bool {
 
 // pathID reads the number {name} of the route. Whatever is not a number that a
 // row could have names nothing: the error is store.ErrNotFound.
-func pathID(r *http.Request, name string) (int64, error) {
+func pathID(r *http.Request, name string) (int64, error) { //nolint:unparam // builds are not the only rows with numbers
 	id, err := strconv.ParseInt(chi.URLParam(r, name), 10, 64)
 	if err != nil || id < 1 {
 		return 0, store.ErrNotFound

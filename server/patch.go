@@ -63,8 +63,8 @@ func edit(document []byte, operations jsonpatch.Patch) ([]byte, error) {
 	}
 	// Which operation was it? The first n apply up to it and fail from it on.
 	at := sort.Search(len(operations), func(n int) bool {
-		_, err := operations[:n+1].ApplyWithOptions(document, options)
-		return err != nil
+		_, failed := operations[:n+1].ApplyWithOptions(document, options)
+		return failed != nil
 	})
 	return nil, patchFault(operations, at, err)
 }
@@ -115,7 +115,7 @@ func readPatch(patch []byte) (jsonpatch.Patch, error) {
 		if !ok {
 			return nil, malformed("Operation %d has no \"op\".", i)
 		}
-		if _, ok := pointer(op["path"]); !ok {
+		if !isPointer(op["path"]) {
 			return nil, malformed("Operation %d has no \"path\" that is a JSON Pointer.", i)
 		}
 		switch kind {
@@ -124,7 +124,7 @@ func readPatch(patch []byte) (jsonpatch.Patch, error) {
 				return nil, malformed("Operation %d has no \"value\".", i)
 			}
 		case "move", "copy":
-			if _, ok := pointer(op["from"]); !ok {
+			if !isPointer(op["from"]) {
 				return nil, malformed("Operation %d has no \"from\" that is a JSON Pointer.", i)
 			}
 		case "remove":
@@ -148,8 +148,8 @@ func text(raw json.RawMessage) (string, bool) {
 	return *s, true
 }
 
-// pointer returns a JSON string's value that is a JSON Pointer (RFC 6901).
-func pointer(raw json.RawMessage) (string, bool) {
+// isPointer tells whether a value is a string that is a JSON Pointer (RFC 6901).
+func isPointer(raw json.RawMessage) bool {
 	s, ok := text(raw)
-	return s, ok && (s == "" || strings.HasPrefix(s, "/"))
+	return ok && (s == "" || strings.HasPrefix(s, "/"))
 }

@@ -90,7 +90,7 @@ func send(w http.ResponseWriter, status int, contentType string, body []byte) {
 	h.Set("Content-Type", contentType)
 	h.Set("Content-Length", strconv.Itoa(len(body)))
 	w.WriteHeader(status)
-	_, _ = w.Write(body) // the only failure is a program that went away
+	_, _ = w.Write(body) //nolint:gosec // JSON with its own content type and nosniff: no browser takes it for a page
 }
 
 // forPrograms tells whether an address is one of those for programs.

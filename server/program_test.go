@@ -30,34 +30,34 @@ type program struct {
 
 // startProgram starts the server on a data file and any free port and waits
 // for its first line. environment is added to ours.
-func startProgram(t testing.TB, data string, environment ...string) *program {
-	t.Helper()
+func startProgram(tb testing.TB, data string, environment ...string) *program {
+	tb.Helper()
 	args := strings.Join([]string{"serve", "-listen", "127.0.0.1:0", "-data", data}, "\n")
 	p := &program{cmd: exec.Command(os.Args[0]), stderr: &lockedLog{}}
 	p.cmd.Env = append(append(os.Environ(), childArgs+"="+args), environment...)
 	p.cmd.Stderr = p.stderr
 	out, err := p.cmd.StdoutPipe()
 	if err != nil {
-		t.Fatal(err)
+		tb.Fatal(err)
 	}
-	if err := p.cmd.Start(); err != nil {
-		t.Fatal(err)
+	if err = p.cmd.Start(); err != nil {
+		tb.Fatal(err)
 	}
-	t.Cleanup(func() { _ = p.cmd.Process.Kill() }) // of no effect when it has ended
+	tb.Cleanup(func() { _ = p.cmd.Process.Kill() }) // of no effect when it has ended
 	line, err := bufio.NewReader(out).ReadString('\n')
 	if err != nil {
 		_ = p.cmd.Wait()
-		t.Fatalf("no first line: %v\n%s", err, p.stderr)
+		tb.Fatalf("no first line: %v\n%s", err, p.stderr)
 	}
 	p.base = strings.TrimSuffix(line, "\n")
 	return p
 }
 
 // end sends a signal and returns the exit code, -1 when the signal ended it.
-func (p *program) end(t testing.TB, signal syscall.Signal) int {
-	t.Helper()
+func (p *program) end(tb testing.TB, signal syscall.Signal) int {
+	tb.Helper()
 	if err := p.cmd.Process.Signal(signal); err != nil {
-		t.Fatal(err)
+		tb.Fatal(err)
 	}
 	_ = p.cmd.Wait() // an exit code other than 0 is the caller's to judge
 	return p.cmd.ProcessState.ExitCode()

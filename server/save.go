@@ -14,7 +14,7 @@ import (
 
 // create puts a new build on the shelf. A document with faults is refused with
 // calc.Invalid; one that can be read but not solved is kept, see judge.
-func (s *server) create(ctx context.Context, document []byte) (store.Build, calc.Build, calc.Report, error) {
+func (s *server) create(ctx context.Context, document []byte) (store.Build, calc.Build, calc.Report, error) { //nolint:unparam // alike to change
 	b, report, sum, err := examine(document)
 	if err == nil { // the reader's sentences are better than the schema's
 		err = matchesSchema(document)

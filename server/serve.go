@@ -85,10 +85,10 @@ func (s *server) serveUntil(ctx context.Context, listener net.Listener, stdout, 
 		return err
 	}
 	address, _ := listener.Addr().(*net.TCPAddr)
-	fmt.Fprintf(stdout, "%s\n", webAddress(address.AddrPort()))
-	fmt.Fprintf(stdout, "data: %s\n", file)
+	say(stdout, "%s\n", webAddress(address.AddrPort()))
+	say(stdout, "data: %s\n", file)
 	if !address.IP.IsLoopback() {
-		fmt.Fprintln(stderr, "caution: whoever reaches this address over the network can read and change every build")
+		say(stderr, "caution: whoever reaches this address over the network can read and change every build\n")
 	}
 
 	web := &http.Server{
@@ -172,12 +172,10 @@ func notOpened(file string, err error) string {
 // reason is an error's cause, without the operation and the
 // path that the sentence around it has already.
 func reason(err error) error {
-	var no syscall.Errno
-	if errors.As(err, &no) {
+	if no, is := errors.AsType[syscall.Errno](err); is {
 		return no
 	}
-	var op *net.OpError
-	if errors.As(err, &op) {
+	if op, is := errors.AsType[*net.OpError](err); is {
 		return op.Err
 	}
 	if inner := errors.Unwrap(err); inner != nil {

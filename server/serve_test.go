@@ -112,7 +112,7 @@ func TestReasonsNotToStartAreOneSentenceAndTouchNothing(t *testing.T) {
 	if err != nil {
 		t.Fatal(err)
 	}
-	defer taken.Close()
+	defer func() { _ = taken.Close() }()
 	put := func(name, content string) string {
 		path := filepath.Join(folder, name)
 		if err := os.WriteFile(path, []byte(content), 0o600); err != nil {
