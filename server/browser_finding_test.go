@@ -53,6 +53,8 @@ func TestFindingByKeyboard(t *testing.T) {
 	b.wait("the first card", at+` === `+quote(first))
 	b.press(kb.Enter)
 	b.wait("the build's page", `location.pathname.startsWith("/builds/")`)
+	b.press("/")
+	b.wait("the search field of the top bar to have the focus", `document.activeElement.name === "q"`)
 }
 
 // What is typed into a part's form shows at once what it amounts to, and never

@@ -9,6 +9,7 @@ import (
 	"lanternbook/calc"
 	"lanternbook/calc/quantity"
 	"lanternbook/store"
+	"lanternbook/web"
 )
 
 // cardStrings is how many strings the small picture of a build shows; more of
@@ -108,18 +109,19 @@ func newCard(b calc.Build, r calc.Report) card {
 }
 
 // searchText is every word that a build should be found by: what the job is
-// called and for whom, what feeds it, and the parts in it by key and by name.
+// called and for whom, what feeds it, the parts in it by key and by name, and
+// the colours they shine in.
 func searchText(b calc.Build) string {
 	words := []string{b.Title, b.Client, b.Site}
 	words = append(words, b.Tags...)
 	words = append(words, b.Supply.Label, quantity.Format(b.Supply.Voltage.Typ, "V", 3))
 	for _, key := range slices.Sorted(maps.Keys(b.Parts)) {
 		words = append(words, key)
-		switch p := b.Parts[key]; {
-		case p.LED != nil:
-			words = append(words, p.LED.Name, p.LED.MakerCode, p.LED.Colour)
-		case p.Transistor != nil:
-			words = append(words, p.Transistor.Name, p.Transistor.MakerCode)
+		part := b.Parts[key]
+		is := web.PartCommon(part)
+		words = append(words, is.Name, is.MakerCode)
+		if part.LED != nil {
+			words = append(words, part.LED.Colour, web.Emitted(*part.LED).Word)
 		}
 	}
 	words = slices.DeleteFunc(words, func(w string) bool { return w == "" })

@@ -90,6 +90,16 @@ func TestShelfSearch(t *testing.T) {
 	}
 }
 
+// A build is found by what its LEDs look like, and by any part in it.
+func TestShelfFindsColoursAndEveryPart(t *testing.T) {
+	p := openShop(t)
+	p.importBuild(strings.Replace(titled(t, "Nanometres"), `"colour": "amber", "wavelength": 590`, `"wavelength": 605`, 1))
+	p.importBuild(strings.Replace(titled(t, "Spares"), `"parts": {`, `"parts": {"m1": {"type": "nmos", "name": "Foot switch", "maker_code": "FET-9"}, `, 1))
+	for query, found := range map[string]string{"orange": "Nanometres", "foot switch": "Spares", "fet-9": "Spares"} {
+		wantWords(t, p.get(shelfAddress(query)), found, "1 of 2 builds")
+	}
+}
+
 func TestShelfKeepsTheQueryInItsField(t *testing.T) {
 	p := openShop(t)
 	wantWords(t, p.get(`/?q=%22%3E%3Cscript%3E`), `value=""><script>"`)

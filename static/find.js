@@ -1,6 +1,6 @@
-// Finding without a mouse, on the shelf and in the drawer: "/" goes to the
-// search field, arrows go from one card or row to the next. Tab reaches them
-// all without this file.
+// Finding without a mouse: "/" goes to the search field of any page; on the
+// shelf and in the drawer arrows go from one card or row to the next. Tab
+// reaches them all without this file.
 "use strict";
 
 const stops = () => [...document.querySelectorAll("a.open")];
@@ -27,7 +27,7 @@ const beside = (from, all, down) => {
 
 document.addEventListener("keydown", (event) => {
   if (event.defaultPrevented || event.ctrlKey || event.metaKey || event.altKey) return;
-  const find = document.getElementById("find");
+  const find = document.getElementById("find") || document.getElementById("find-build");
   const at = event.target;
   if (event.key === "/" && find && !typing(at)) {
     event.preventDefault();

@@ -9,8 +9,8 @@ import (
 	"lanternbook/calc/quantity"
 )
 
-// partCommon returns what every part may carry, whatever its type.
-func partCommon(p calc.Part) calc.Common {
+// PartCommon returns what every part may carry, whatever its type.
+func PartCommon(p calc.Part) calc.Common {
 	switch {
 	case p.LED != nil:
 		return p.LED.Common
@@ -32,7 +32,7 @@ func partCommon(p calc.Part) calc.Common {
 
 // partName is what a part is called: its name, or the key it stands under.
 func partName(key string, p calc.Part) string {
-	if name := partCommon(p).Name; name != "" {
+	if name := PartCommon(p).Name; name != "" {
 		return name
 	}
 	return key

@@ -20,3 +20,12 @@ type ProblemView struct {
 	Title string // "There is no such build"
 	Text  string // what the person can do about it
 }
+
+// searchID is what the search box of the top bar is called: "find", which is
+// where "/" leads, unless the page has a search field of its own.
+func (v LayoutView) searchID() string {
+	if v.Here == "drawer" {
+		return "find-build"
+	}
+	return "find"
+}
