@@ -37,6 +37,9 @@ type Circuit struct {
 	regulators []regulator
 	sources    []source
 
+	bridge ResistorID // the short of Bridge, −1 until the first
+	loose  Node       // where a cut lead hangs, None until the first
+
 	// Work space of a solve; see newton.go.
 	row     []int // node of each unknown
 	col     []int // unknown of each node, −1 for a held one
@@ -59,7 +62,7 @@ type resistor struct {
 
 // New returns a circuit that has only its return, in air of 25 °C.
 func New() *Circuit {
-	c := &Circuit{air: device.RatedC}
+	c := &Circuit{air: device.RatedC, bridge: -1, loose: None}
 	c.addNode("return", true)
 	return c
 }
@@ -142,12 +145,18 @@ func (c *Circuit) Ohms(id ResistorID) float64 { return c.resistors[id].ohms }
 // to its second.
 func (c *Circuit) ResistorCurrent(id ResistorID) float64 {
 	r := &c.resistors[id]
+	if r.off {
+		return 0
+	}
 	return (c.v[r.a] - c.v[r.b]) / r.ohms
 }
 
 // ResistorPower returns a resistor's dissipation in watts.
 func (c *Circuit) ResistorPower(id ResistorID) float64 {
 	r := &c.resistors[id]
+	if r.off {
+		return 0
+	}
 	d := c.v[r.a] - c.v[r.b]
 	return d * d / r.ohms
 }
@@ -163,6 +172,7 @@ type clamp struct {
 	current      float64
 	conductance  float64
 	tempco, rest float64
+	oneWay, off  bool
 }
 
 // Clamp adds a reference that holds a node at volts at 25 °C, with a slope
@@ -203,12 +213,14 @@ type ledStack struct {
 	count    []float64
 	volts    []float64 // [V] of one LED of each type, at the last solution
 	junction []float64 // [°C]
+	rth      []float64 // [K/W] as given
 	lead     int
 	x        float64
 	current  float64
 	off      bool
 	limited  bool
 	runaway  bool
+	instead  float64 // [Ω] in the place of an LED that was taken out
 	ieff, ge float64 // linearised current and conductance
 	vab      float64
 	dvdx     float64
@@ -223,6 +235,9 @@ func (c *Circuit) LEDs(a, b Node, leds []device.LED, count []int) LEDsID {
 	}
 	s.volts = make([]float64, len(leds))
 	s.junction = make([]float64, len(leds))
+	for k := range leds {
+		s.rth = append(s.rth, leds[k].Rth)
+	}
 	s.choose()
 	s.start()
 	c.stacks = append(c.stacks, s)
@@ -293,13 +308,19 @@ func (c *Circuit) LEDVoltageAt(id LEDsID, k int, current float64) float64 {
 
 // Isothermal keeps every part at the air's temperature from now on, as if it
 // gave off no heat.
-func (c *Circuit) Isothermal() {
+func (c *Circuit) Isothermal() { c.heat(0) }
+
+// Warm lets every part heat itself again.
+func (c *Circuit) Warm() { c.heat(1) }
+
+func (c *Circuit) heat(share float64) {
 	for i := range c.bjts {
-		c.bjts[i].rth = 0
+		c.bjts[i].rth = share * c.bjts[i].given
 	}
 	for i := range c.stacks {
-		for k := range c.stacks[i].leds {
-			c.stacks[i].leds[k].Rth, c.stacks[i].typical[k].Rth = 0, 0
+		s := &c.stacks[i]
+		for k := range s.leds {
+			s.leds[k].Rth, s.typical[k].Rth = share*s.rth[k], share*s.rth[k]
 		}
 	}
 }
@@ -317,6 +338,9 @@ type bjt struct {
 	at       device.BJTAt
 	fresh    bool // at belongs to t and par
 	rth      float64
+	given    float64 // rth as given
+	wired    [3]Node // c, b, e as given
+	off      bool    // takes no part
 	vbe, vbc float64
 	t        float64
 	limited  bool
@@ -338,7 +362,7 @@ func (c *Circuit) BJT(collector, base, emitter Node, par device.BJT, pnp bool, r
 	if pnp {
 		sign = -1
 	}
-	q := bjt{c: collector, b: base, e: emitter, sign: sign, typical: par, par: par, rth: rth}
+	q := bjt{c: collector, b: base, e: emitter, sign: sign, typical: par, par: par, rth: rth, given: rth, wired: [3]Node{collector, base, emitter}}
 	q.start(c.air)
 	c.bjts = append(c.bjts, q)
 	return BJTID(len(c.bjts) - 1)
@@ -380,4 +404,9 @@ func (c *Circuit) BJTPower(id BJTID) float64 {
 }
 
 // BJTJunction returns a transistor's junction temperature in °C.
-func (c *Circuit) BJTJunction(id BJTID) float64 { return c.bjts[id].t }
+func (c *Circuit) BJTJunction(id BJTID) float64 {
+	if c.bjts[id].off {
+		return c.air
+	}
+	return c.bjts[id].t
+}

@@ -10,9 +10,10 @@ import "math"
 type mode int
 
 const (
-	holding mode = iota // doing what it is for
-	starved             // at the end of what its supply lets it
-	shut                // at the other end
+	holding  mode = iota // doing what it is for
+	starved              // at the end of what its supply lets it
+	shut                 // at the other end
+	bypassed             // a regulator shorted from input to output
 )
 
 // FETID names a MOSFET of its circuit.
@@ -28,6 +29,7 @@ type fet struct {
 	rth       float64
 	current   float64
 	gm, gds   float64
+	off       bool
 }
 
 // FET adds a MOSFET with a threshold in volts, a transconductance factor in
@@ -53,7 +55,7 @@ func (c *Circuit) FETJunction(id FETID) float64 { return c.air + c.fets[id].rth*
 func (f *fet) step(vgs, vds float64) {
 	over := vgs - f.threshold
 	switch {
-	case over <= 0:
+	case over <= 0 || f.off:
 		f.gm, f.gds = dark, dark
 		f.current = dark * vds
 	case vds < over:
@@ -78,6 +80,7 @@ type amp struct {
 	plus, minus, out, supply Node
 	offset, low, high        float64
 	mode                     mode
+	stuck                    bool // in its mode
 }
 
 // Amp adds an op-amp on a supply node; its output, which must drive nothing
@@ -116,6 +119,9 @@ func (c *Circuit) stepAmp(a *amp) {
 func (a *amp) check(c *Circuit) mode {
 	high := math.Max(c.v[a.supply]-a.high, a.low)
 	miss := c.v[a.plus] + a.offset - c.v[a.minus]
+	if a.stuck {
+		return a.mode
+	}
 	switch a.mode {
 	case holding:
 		if c.v[a.out] > high+modeRest {
@@ -150,6 +156,7 @@ type regulator struct {
 	dropout           [][2]float64 // [A, V], rising in current
 	rth               float64
 	mode              mode
+	stuck             bool // in its mode
 }
 
 // Regulator adds a regulator with its reference in volts, its adjustment
@@ -228,6 +235,10 @@ func (c *Circuit) stepRegulator(r *regulator) {
 		c.sum[out] = c.v[r.out] + volts - c.v[r.in]
 		c.addTo(out, r.out, 1+slope/r.ohms)
 		c.addTo(out, r.in, -1)
+	case bypassed:
+		c.sum[out] = c.v[r.out] - c.v[r.in]
+		c.addTo(out, r.out, 1)
+		c.addTo(out, r.in, -1)
 	default:
 		c.sum[out] = c.v[r.out]
 		c.addTo(out, r.out, 1)
@@ -237,6 +248,9 @@ func (c *Circuit) stepRegulator(r *regulator) {
 func (r *regulator) check(c *Circuit) mode {
 	through := c.v[r.out] / r.ohms
 	least, _ := r.dropoutAt(through)
+	if r.stuck {
+		return r.mode
+	}
 	switch r.mode {
 	case holding:
 		if c.v[r.in]-c.v[r.out] < least-modeRest {
@@ -348,7 +362,7 @@ func (c *Circuit) remode() bool {
 func (c *Circuit) starve() bool {
 	any := false
 	for i := range c.amps {
-		if c.amps[i].mode == holding {
+		if c.amps[i].mode == holding && !c.amps[i].stuck {
 			c.amps[i].mode = starved
 			any = true
 		}

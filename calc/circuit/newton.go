@@ -121,7 +121,7 @@ func (c *Circuit) scaleHeld(held []float64, share float64) {
 // hot refuses a solution in which a junction is beyond survival.
 func (c *Circuit) hot(worst *Unsolved) error {
 	for i := range c.bjts {
-		if c.bjts[i].t > runawayC {
+		if c.bjts[i].t > runawayC && !c.bjts[i].off {
 			worst.Celsius, worst.Runaway = c.bjts[i].t, true
 			return worst.copy()
 		}
@@ -221,6 +221,9 @@ func (c *Circuit) newton(worst *Unsolved) bool {
 		}
 		for i := range c.bjts {
 			q := &c.bjts[i]
+			if q.off {
+				continue
+			}
 			volts, k := q.settle(q.sign*(c.v[q.b]-c.v[q.e]), q.sign*(c.v[q.b]-c.v[q.c]))
 			moved, kelvin = math.Max(moved, volts), math.Max(kelvin, k)
 			limited = limited || q.limited
@@ -273,6 +276,9 @@ func (c *Circuit) assemble() {
 	}
 	for i := range c.bjts {
 		q := &c.bjts[i]
+		if q.off {
+			continue
+		}
 		q.step(c.air, q.sign*(c.v[q.b]-c.v[q.e]), q.sign*(c.v[q.b]-c.v[q.c]))
 		ic, ib := q.sign*q.i0[0], q.sign*q.i0[1]
 		sum[q.c] += ic

@@ -9,8 +9,8 @@ func (s *ledStack) step(air, vab float64) {
 	e := math.Exp(math.Min(s.x/nvt, hottest))
 	current := lead.Is * (e - 1)
 	didx := lead.Is * e / nvt
-	total := 0.0
-	s.dvdx = 0
+	total := current * s.instead
+	s.dvdx = s.instead * didx
 	for k := range s.leds {
 		if current <= 0 && k == s.lead {
 			// In the dark and in reverse the lead's logarithm is x itself.
@@ -20,7 +20,7 @@ func (s *ledStack) step(air, vab float64) {
 		} else {
 			p := s.leds[k].Working(current, air)
 			s.volts[k], s.junction[k] = p.Voltage, p.Junction
-			s.runaway = s.runaway || p.Runaway
+			s.runaway = s.runaway || p.Runaway && s.count[k] > 0
 			s.dvdx += s.count[k] * p.Slope * didx
 		}
 		total += s.count[k] * s.volts[k]
@@ -153,7 +153,7 @@ const (
 func (k *clamp) step(air, v, feed float64) {
 	hold := k.volts + k.tempco*(air-rated)
 	k.conductance, k.rest = dark, 0
-	if v > hold || feed > hold {
+	if !k.off && (v > hold || feed > hold && !k.oneWay) {
 		k.conductance, k.rest = 1/k.ohms, hold/k.ohms
 	}
 	k.current = k.conductance*v - k.rest
