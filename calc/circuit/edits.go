@@ -212,3 +212,27 @@ func (c *Circuit) Burnt() bool {
 	}
 	return false
 }
+
+// BJTVolts returns a transistor's collector-emitter and base-emitter voltage
+// in volts, in its own sense: positive when it conducts forward.
+func (c *Circuit) BJTVolts(id BJTID) (vce, vbe float64) {
+	q := &c.bjts[id]
+	if q.off {
+		return 0, 0
+	}
+	return q.sign * (c.v[q.c] - c.v[q.e]), q.sign * (c.v[q.b] - c.v[q.e])
+}
+
+// FETVolts returns a MOSFET's drain-source voltage in volts and FETCurrent its
+// drain current in amperes.
+func (c *Circuit) FETVolts(id FETID) float64 { return c.v[c.fets[id].d] - c.v[c.fets[id].s] }
+
+// FETCurrent returns a MOSFET's drain current in amperes.
+func (c *Circuit) FETCurrent(id FETID) float64 { return c.fets[id].current }
+
+// RegulatorVolts returns the voltage in volts from a regulator's input to its
+// output.
+func (c *Circuit) RegulatorVolts(id RegulatorID) float64 {
+	r := &c.regulators[id]
+	return c.v[r.in] - c.v[r.out]
+}

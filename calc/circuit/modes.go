@@ -81,6 +81,7 @@ type amp struct {
 	offset, low, high        float64
 	mode                     mode
 	stuck                    bool // in its mode
+	failed                   int  // how often it could not hold in this search
 }
 
 // Amp adds an op-amp on a supply node; its output, which must drive nothing
@@ -131,6 +132,9 @@ func (a *amp) check(c *Circuit) mode {
 			return shut
 		}
 	case starved:
+		if miss < -modeRest && a.failed > 1 {
+			return shut // nothing it does brings its inputs together
+		}
 		if miss < -modeRest {
 			return holding
 		}
@@ -178,7 +182,8 @@ func (c *Circuit) SetRegulator(id RegulatorID, reference, adjust, ohms float64) 
 // of its set resistor.
 func (c *Circuit) RegulatorPower(id RegulatorID) float64 {
 	r := &c.regulators[id]
-	return c.v[r.out]/r.ohms*(c.v[r.in]-c.v[r.out]) + r.given()*c.v[r.in]
+	given, _ := r.given(c.v[r.in])
+	return c.v[r.out]/r.ohms*(c.v[r.in]-c.v[r.out]) + given*c.v[r.in]
 }
 
 // SetPower returns the dissipation of a regulator's set resistor in watts.
@@ -199,12 +204,18 @@ func (c *Circuit) RegulatorDropout(id RegulatorID, current float64) float64 {
 	return volts
 }
 
-// given is the adjustment current, which flows only with an input.
-func (r *regulator) given() float64 {
-	if r.mode == shut {
-		return 0
+// given returns the adjustment current in amperes and its slope in siemens: all
+// of it once the input is above the dropout, in proportion below.
+func (r *regulator) given(in float64) (current, slope float64) {
+	switch {
+	case r.mode != shut:
+		return r.adjust, 0
+	case r.stuck:
+		return 0, 0
 	}
-	return r.adjust
+	least, _ := r.dropoutAt(0)
+	slope = r.adjust / math.Max(least, leastDropout)
+	return slope * in, slope
 }
 
 func (r *regulator) dropoutAt(current float64) (volts, slope float64) {
@@ -224,8 +235,10 @@ func (c *Circuit) stepRegulator(r *regulator) {
 	out := int(r.out)
 	c.clearRow(out)
 	through := c.v[r.out] / r.ohms
-	c.sum[r.in] += through + r.given()
+	given, slope := r.given(c.v[r.in])
+	c.sum[r.in] += through + given
 	c.addTo(int(r.in), r.out, 1/r.ohms)
+	c.addTo(int(r.in), r.in, slope)
 	switch r.mode {
 	case holding:
 		c.sum[out] = c.v[r.out] - r.reference
@@ -364,6 +377,7 @@ func (c *Circuit) starve() bool {
 	for i := range c.amps {
 		if c.amps[i].mode == holding && !c.amps[i].stuck {
 			c.amps[i].mode = starved
+			c.amps[i].failed++
 			any = true
 		}
 	}

@@ -56,6 +56,9 @@ func (c *Circuit) Solve() error {
 	if !c.modal() {
 		return c.solve()
 	}
+	for i := range c.amps {
+		c.amps[i].failed = 0
+	}
 	for range mostModes {
 		err := c.solve()
 		if err != nil && !c.starve() {

@@ -35,14 +35,16 @@ func RailSink(leds []LED, r OnRail) *Assembly {
 // Rail is a base rail as a circuit: Out is the rail itself.
 type Rail struct {
 	Board
-	Out     circuit.Node
-	Control circuit.Node // circuit.None without
-	line    circuit.ResistorID
+	Out  circuit.Node
+	line circuit.ResistorID
+	// Control is a follower's base and Reference the node that a reference
+	// holds, circuit.None where the rail has none.
+	Control, Reference circuit.Node
 }
 
 // newRail makes a rail's feed and its node, with what stands for its strings.
 func newRail() *Rail {
-	r := &Rail{Board: newBoard(), Control: circuit.None}
+	r := &Rail{Board: newBoard(), Control: circuit.None, Reference: circuit.None}
 	r.Out = r.Net.Node("rail")
 	r.line = r.Net.Resistor(r.Out, circuit.Ground, 1)
 	r.Net.Switch(r.line, false)
@@ -82,6 +84,7 @@ func ReferenceRail(reference Reference, bias Resistance) *Rail {
 	c := r.Net
 	r.resistor("bias_resistor", r.Feed, r.Out, bias)
 	r.reference(r.Out, reference)
+	r.Reference = r.Out
 	r.start = func(feed float64) { c.Guess(r.Out, min(reference.Volts.Typ, feed)) }
 	return r
 }
@@ -94,6 +97,7 @@ func BufferedRail(reference Reference, bias Resistance, npn Transistor, pulldown
 	held := c.Node("reference")
 	r.resistor("bias_resistor", r.Feed, held, bias)
 	r.reference(held, reference)
+	r.Reference = held
 	r.transistor("follower_transistor", r.Feed, held, r.Out, npn, false)
 	r.resistor("pulldown_resistor", r.Out, circuit.Ground, pulldown)
 	r.start = func(feed float64) {

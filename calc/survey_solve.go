@@ -1,0 +1,536 @@
+package calc
+
+import (
+	"errors"
+	"math"
+
+	"lanternbook/calc/driver"
+	"lanternbook/calc/heat"
+	"lanternbook/calc/wiring"
+)
+
+// surveyor holds a build wired up for faults and its solution without one, to
+// which it comes back after each.
+type surveyor struct {
+	p       *plant
+	volts   float64 // [V] of the supply
+	air     float64 // [°C] round the parts
+	coupled bool    // strings share cable or source resistance
+
+	// lines are the strings of the build, and last the patient: the one of a
+	// string's Quantity that has the fault. Its slot is nil for a fault
+	// elsewhere, and then the string has its whole quantity again.
+	lines  []*line
+	lineAt []standing
+	homes  []home
+	onRail [][]int // the strings on each rail
+
+	rails     []railStanding
+	railHomes []railHome
+
+	loads  []wiring.Load
+	result wiring.Result
+	all    []int // every string
+	scope  []int // the strings that a fault can reach, its own not among them
+
+	patientOf int // the string whose patient is made; −1 before
+	made      *line
+	madeHome  home
+
+	assumed, missing []string
+	said             map[string]bool
+	atHome           float64 // [A] out of the supply without a fault
+}
+
+// standing is a string as a straight line round the point it was last solved
+// at: what it takes from its feed and from its rail.
+type standing struct {
+	feed, rail        float64 // [V]
+	draw, drawSlope   float64 // [A], [S] by the feed
+	takes, takesSlope float64 // [A], [S] by the rail
+	stale             bool    // to be solved again wherever it stands
+	touched           bool    // was solved since the last homecoming
+	cold              bool    // is kept from heating itself
+}
+
+// home is a string without a fault.
+type home struct {
+	state   driver.State
+	at      standing
+	current float64 // [A] through its LEDs
+	power   float64 // [W] in what holds the current
+	limits  []limit
+}
+
+type railStanding struct {
+	touched, cold bool
+}
+
+type railHome struct {
+	state  driver.State
+	volts  float64
+	draw   float64   // [A]
+	power  []float64 // [W] of each device
+	limits []limit
+}
+
+const (
+	// nearFeed and nearRail are how far in volts a sound string's feed or rail
+	// may move before it is solved again: its straight line is then still right
+	// to a part in ten thousand of its current.
+	nearFeed, nearRail = 1e-3, 1e-4
+	// surveyRest is the step in volts at which the string with the fault, cable
+	// and rail agree.
+	surveyRest = 1e-6
+	// nearAir is the step in kelvin at which a can's air counts as at rest.
+	nearAir = 0.1
+)
+
+// newSurveyor wires a build up and solves it without a fault.
+func newSurveyor(b *Build) (*surveyor, error) {
+	p, err := compile(b)
+	if err != nil {
+		return nil, err
+	}
+	air, err := p.operateOrCold(&Report{})
+	if err != nil {
+		return nil, err
+	}
+	s := &surveyor{p: p, volts: b.Supply.Voltage.Typ, air: air, coupled: p.coupled(), patientOf: -1, said: map[string]bool{}}
+	for _, l := range p.strings {
+		s.ready(&l.Board)
+		l.Meter()
+		l.started = true
+		s.lines = append(s.lines, l)
+		s.all = append(s.all, l.index)
+	}
+	s.lines = append(s.lines, nil)
+	s.onRail = make([][]int, len(p.rails))
+	for k, r := range p.rails {
+		s.ready(&r.Board)
+		r.Meter()
+		for _, l := range r.lines {
+			s.onRail[k] = append(s.onRail[k], l.index)
+		}
+	}
+	s.lineAt = make([]standing, len(s.lines))
+	s.rails = make([]railStanding, len(p.rails))
+	s.loads = make([]wiring.Load, len(s.lines)+len(p.rails))
+	s.scope = s.all
+	for j, l := range p.strings {
+		s.lineAt[j] = standing{feed: l.Net.Voltage(l.Feed), stale: true}
+		s.lineAt[j].cold = l.runaway != nil
+	}
+	if err := s.settleAir(); err != nil {
+		return nil, err
+	}
+	s.keepHome()
+	s.atHome = s.total()
+	return s, nil
+}
+
+// ready makes a board fit for faults, and notes what had to be assumed.
+func (s *surveyor) ready(a *driver.Board) {
+	a.Usable(func(part string) float64 {
+		if v := s.p.build.Parts[part].Transistor.MaxEmitterBaseVoltage; v != nil && *v > 0 {
+			return *v
+		}
+		s.assume(part + ": its emitter-base junction breaks down at 7 V")
+		return assumedBreakdown
+	})
+}
+
+// assumedBreakdown is the reverse voltage in volts at which the emitter-base
+// junction of a transistor conducts whose rating is not given. Common practice,
+// no source: 5 to 8 V.
+const assumedBreakdown = 7.0
+
+// keepHome keeps the build's solution without a fault.
+func (s *surveyor) keepHome() {
+	s.homes = make([]home, len(s.lines))
+	for j, l := range s.p.strings {
+		h := &s.homes[j]
+		s.lineAt[j].touched = false
+		h.at, h.current = s.lineAt[j], l.Net.LEDCurrent(l.Stack)
+		h.power = l.Power(l.Devices[l.Holder])
+		h.limits = s.limitsOf(l)
+		s.measure(l, s.lineAt[j].cold, h.limits)
+		for k := range h.limits {
+			h.limits[k].home = h.limits[k].value
+		}
+		l.Save(&h.state)
+	}
+	s.railHomes = make([]railHome, len(s.p.rails))
+	for k, r := range s.p.rails {
+		h := &s.railHomes[k]
+		s.rails[k].touched = false
+		h.volts, h.draw = r.volts, r.Draw()
+		for _, d := range r.Devices {
+			h.power = append(h.power, r.Power(d))
+		}
+		h.limits = s.railLimits(r)
+		s.measureRail(r, s.rails[k].cold, h.limits)
+		for i := range h.limits {
+			h.limits[i].home = h.limits[i].value
+		}
+		r.Save(&h.state)
+	}
+}
+
+// goHome puts everything that a fault has moved back.
+func (s *surveyor) goHome(air float64) {
+	for _, j := range s.scope {
+		s.lineHome(j, &s.homes[j])
+		s.lines[j].Net.SetAir(air)
+	}
+	if n := len(s.lines) - 1; s.lines[n] != nil {
+		s.lineHome(n, &s.madeHome)
+		s.lines[n].Net.SetAir(air)
+	}
+	for k, r := range s.p.rails {
+		at, h := &s.rails[k], &s.railHomes[k]
+		r.Net.SetAir(air)
+		if !at.touched {
+			continue
+		}
+		if at.cold {
+			r.Net.Warm()
+		}
+		r.Board.Load(&h.state)
+		r.volts, r.started = h.volts, true
+		*at = railStanding{}
+	}
+	s.air = air
+}
+
+func (s *surveyor) lineHome(j int, h *home) {
+	at, l := &s.lineAt[j], s.lines[j]
+	if !at.touched {
+		*at = h.at
+		return
+	}
+	if at.cold && !h.at.cold {
+		l.Net.Warm()
+	}
+	l.Load(&h.state)
+	l.started = true
+	*at = h.at
+}
+
+// patient returns the one of string i that gets the faults, alike and solved
+// in its place.
+func (s *surveyor) patient(i int) error {
+	n := len(s.lines) - 1
+	l := s.p.strings[i]
+	if s.patientOf == i {
+		s.lines[n] = s.made
+		s.lineAt[n] = s.madeHome.at
+		l.quantity = float64(l.spec.Quantity) - 1
+		return nil
+	}
+	sick := &line{index: i, spec: l.spec, quantity: 1, run: l.run, rail: l.rail}
+	if err := sick.assemble(s.p.build); err != nil {
+		return err
+	}
+	s.ready(&sick.Board)
+	sick.Meter()
+	if s.homes[i].at.cold {
+		sick.Net.Isothermal()
+	}
+	sick.Net.SetAir(s.air)
+	if sick.rail != nil {
+		sick.Net.Hold(sick.Rail, sick.rail.volts)
+	}
+	s.lines[n], s.made, s.patientOf = sick, sick, i
+	s.lineAt[n] = standing{cold: s.homes[i].at.cold}
+	l.quantity = float64(l.spec.Quantity) - 1
+	if err := s.solveLine(n, s.homes[i].at.feed); err != nil {
+		return err
+	}
+	s.lineAt[n].touched = false
+	h := &s.madeHome
+	h.at, h.current = s.lineAt[n], s.homes[i].current
+	h.limits = append(h.limits[:0], s.homes[i].limits...)
+	sick.Save(&h.state)
+	return nil
+}
+
+// discharge takes the patient out.
+func (s *surveyor) discharge() {
+	n := len(s.lines) - 1
+	if s.lines[n] != nil {
+		l := s.p.strings[s.patientOf]
+		l.quantity = float64(l.spec.Quantity)
+	}
+	s.lines[n] = nil
+}
+
+// settleAir settles the build, and in a sealed can its air with it. What burns
+// or overloads the supply does not last until the air has followed.
+func (s *surveyor) settleAir() error {
+	area, transfer, sealed := s.p.sealed()
+	for range treePatience {
+		if err := s.settle(); err != nil || !sealed || !s.lasts() {
+			return err
+		}
+		next := s.p.build.Ambient.Typ + heat.EnclosureRise(s.heat(), area, transfer)
+		if math.Abs(next-s.air) < nearAir {
+			return nil
+		}
+		s.air = next
+		for j, l := range s.lines {
+			if l != nil {
+				l.Net.SetAir(next)
+				s.lineAt[j].stale = true
+			}
+		}
+		for k, r := range s.p.rails {
+			r.Net.SetAir(next)
+			s.rails[k].touched = true
+		}
+	}
+	return &Unsolved{"(all)", errors.New("the air in the can finds no stable temperature")}
+}
+
+// lasts says whether the present state can go on: no part has run away and the
+// supply can give what is drawn.
+func (s *surveyor) lasts() bool {
+	for j := range s.lines {
+		if s.lines[j] != nil && s.lineAt[j].cold && s.homes != nil {
+			return false
+		}
+	}
+	for k := range s.rails {
+		if s.rails[k].cold {
+			return false
+		}
+	}
+	m := s.p.build.Supply.MaxCurrent
+	return m == nil || s.total() <= *m
+}
+
+// heat is what the build takes from its feeds in watts.
+func (s *surveyor) heat() float64 {
+	total := 0.0
+	for j, l := range s.lines {
+		if l != nil {
+			total += l.quantity * s.lineAt[j].draw * s.lineAt[j].feed
+		}
+	}
+	for _, r := range s.p.rails {
+		total += r.Draw() * r.Net.Voltage(r.Feed)
+	}
+	return total
+}
+
+// settle solves strings, rails and cable together. Sound strings that hardly
+// move stand in as straight lines.
+func (s *surveyor) settle() error {
+	n := len(s.lines) - 1
+	for round := range treePatience {
+		for _, j := range s.scope {
+			if s.lineAt[j].stale {
+				if err := s.solveLine(j, s.lineAt[j].feed); err != nil {
+					return err
+				}
+			}
+		}
+		if s.lines[n] != nil && s.lineAt[n].stale {
+			if err := s.solveLine(n, s.lineAt[n].feed); err != nil {
+				return err
+			}
+		}
+		for k := range s.p.rails {
+			if s.reaches(k) {
+				if err := s.balance(k); err != nil {
+					return err
+				}
+			}
+		}
+		moved, err := s.share(round > treePatience/2)
+		if err != nil {
+			return err
+		}
+		if moved < surveyRest {
+			return nil
+		}
+	}
+	return &Unsolved{"(all)", errors.New("strings and cable do not settle")}
+}
+
+// reaches says whether the present fault can reach a rail.
+func (s *surveyor) reaches(k int) bool {
+	l := s.lines[len(s.lines)-1]
+	return s.coupled || s.rails[k].touched || len(s.scope) == len(s.all) || l != nil && l.rail == s.p.rails[k]
+}
+
+// share solves the cable with what strings and rails draw, and solves again
+// what it moves. It returns how far the furthest feed moved in volts that is
+// not within what a straight line covers.
+func (s *surveyor) share(damped bool) (moved float64, err error) {
+	if s.coupled {
+		for j, l := range s.lines {
+			at := &s.lineAt[j]
+			s.loads[j] = wiring.Load{At: -1}
+			if l != nil && l.quantity > 0 {
+				s.loads[j] = wiring.Load{At: l.run, Volts: at.feed, Current: l.quantity * at.draw, Slope: math.Max(0, l.quantity*at.drawSlope)}
+			}
+		}
+		for k, r := range s.p.rails {
+			s.loads[len(s.lines)+k] = wiring.Load{At: r.run, Volts: r.Net.Voltage(r.Feed), Current: r.Draw(), Slope: math.Max(0, r.Net.HeldSlope(r.Feed))}
+		}
+		s.p.tree.Solve(s.volts, s.loads, &s.result)
+	}
+	move := func(j int, tolerance float64) error {
+		at, l := &s.lineAt[j], s.lines[j]
+		feed := s.feedOf(l.run)
+		d := math.Abs(feed - at.feed)
+		if d < tolerance || l.quantity == 0 {
+			return nil
+		}
+		moved = math.Max(moved, d)
+		if damped {
+			feed = (feed + at.feed) / 2
+		}
+		return s.solveLine(j, feed)
+	}
+	for _, j := range s.scope {
+		if err := move(j, nearFeed); err != nil {
+			return moved, err
+		}
+	}
+	if n := len(s.lines) - 1; s.lines[n] != nil {
+		if err := move(n, surveyRest); err != nil {
+			return moved, err
+		}
+	}
+	for k, r := range s.p.rails {
+		if d := math.Abs(s.feedOf(r.run) - r.Net.Voltage(r.Feed)); d >= surveyRest && s.reaches(k) {
+			moved = math.Max(moved, d)
+			s.rails[k].touched = true
+			r.FeedAt(s.feedOf(r.run))
+		}
+	}
+	return moved, nil
+}
+
+// feedOf is the voltage in volts at a run's far end.
+func (s *surveyor) feedOf(run int) float64 {
+	switch {
+	case !s.coupled:
+		return s.volts
+	case run < 0:
+		return s.result.Supply
+	}
+	return s.result.Volts[run]
+}
+
+// solveLine solves a string at its rail's voltage with its feed at a voltage in
+// volts. One that finds no stable temperature, or only one that nothing
+// survives, is solved as it stands in the first moment.
+func (s *surveyor) solveLine(j int, feed float64) error {
+	l, at := s.lines[j], &s.lineAt[j]
+	at.touched, at.stale = true, false
+	if l.rail != nil {
+		l.Net.Hold(l.Rail, l.rail.volts)
+		at.rail = l.rail.volts
+	}
+	err := l.at(feed)
+	if err != nil && !isRunaway(err) {
+		err = l.at(feed) // from the driver's own guess
+	}
+	if !at.cold && (err != nil || l.Net.Burnt()) {
+		at.cold = true
+		l.Net.Isothermal()
+		l.started = false
+		err = l.at(feed)
+	}
+	if err != nil {
+		return err
+	}
+	at.feed, at.draw, at.drawSlope = feed, l.Draw(), l.Net.HeldSlope(l.Feed)
+	if l.rail != nil {
+		at.takes, at.takesSlope = l.Net.HeldCurrent(l.Rail), math.Max(0, l.Net.HeldSlope(l.Rail))
+	}
+	return nil
+}
+
+// solveRail is solveLine for a rail with the load that was put on it.
+func (s *surveyor) solveRail(k int) error {
+	r, at := s.p.rails[k], &s.rails[k]
+	err := r.Net.Solve()
+	again := func() {
+		feed := r.Net.Voltage(r.Feed)
+		r.Start(feed)
+		err = r.Net.Solve()
+	}
+	if err != nil && !isRunaway(err) {
+		again()
+	}
+	if !at.cold && (err != nil || r.Net.Burnt()) {
+		at.cold = true
+		r.Net.Isothermal()
+		again()
+	}
+	if err != nil {
+		return &Unsolved{r.name(), err}
+	}
+	return nil
+}
+
+// balance brings a rail and its strings together, as railLine.balance does,
+// and keeps the answer between the highest voltage at which the strings were
+// seen to take less than the rail gives, and the lowest at which they take
+// more: a fault may bend both far from straight.
+func (s *surveyor) balance(k int) error {
+	r := s.p.rails[k]
+	defer r.Load(0, 0)
+	low, high := math.Inf(-1), math.Inf(1)
+	for range treePatience {
+		takes, slope := 0.0, 0.0
+		add := func(j int, tolerance float64) error {
+			l, at := s.lines[j], &s.lineAt[j]
+			if l.quantity == 0 {
+				return nil
+			}
+			if d := math.Abs(r.volts - at.rail); d > tolerance {
+				if err := s.solveLine(j, at.feed); err != nil {
+					return err
+				}
+			}
+			takes += l.quantity * (at.takes + at.takesSlope*(r.volts-at.rail))
+			slope += l.quantity * at.takesSlope
+			return nil
+		}
+		for _, j := range s.onRail[k] {
+			if err := add(j, nearRail); err != nil {
+				return err
+			}
+		}
+		if n := len(s.lines) - 1; s.lines[n] != nil && s.lines[n].rail == r {
+			if err := add(n, surveyRest/10); err != nil {
+				return err
+			}
+		}
+		r.Load(takes-slope*r.volts, slope)
+		if err := s.solveRail(k); err != nil {
+			return err
+		}
+		step := r.Net.Voltage(r.Out) - r.volts
+		if math.Abs(step) < surveyRest/10 {
+			return nil
+		}
+		s.rails[k].touched = true
+		if step > 0 {
+			low = r.volts
+		} else {
+			high = r.volts
+		}
+		next := r.volts + step
+		if !(next > low && next < high) {
+			next = (low + high) / 2
+		}
+		r.volts = next
+	}
+	return &Unsolved{r.name(), errors.New("rail and strings do not settle")}
+}
