@@ -12,7 +12,7 @@ func onRails(n int, baseOhms float64) calc.Build {
 	b := fourOnARail(true, baseOhms)
 	sink, rail := b.Strings[0], b.Rails[0]
 	b.Strings, b.Rails = nil, nil
-	b.Supply.MaxCurrent = ptr(3)
+	b.Supply.MaxCurrent = new(3.0)
 	for i := range n {
 		if i%6 == 0 {
 			id := fmt.Sprintf("r%d", i/6)
@@ -41,7 +41,7 @@ func BenchmarkSurvey24(b *testing.B) {
 		s.Label = fmt.Sprint(i + 5)
 		oneRail.Strings = append(oneRail.Strings, s)
 	}
-	oneRail.Supply.MaxCurrent = ptr(3)
+	oneRail.Supply.MaxCurrent = new(3.0)
 	for _, c := range []struct {
 		name  string
 		build calc.Build

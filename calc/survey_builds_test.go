@@ -14,17 +14,17 @@ import (
 func tableParts() map[string]calc.Part {
 	return map[string]calc.Part{
 		"white": {Type: calc.TypeLED, LED: &calc.LED{
-			TestCurrent: 0.06, ForwardVoltage: calc.Exactly(2.95), MaxCurrent: ptr(0.09),
+			TestCurrent: 0.06, ForwardVoltage: calc.Exactly(2.95), MaxCurrent: new(0.09),
 			Model: &calc.LEDModel{Is: 5.6e-26, N: 1.98, Rs: 2.25},
 		}},
 		"small white": {Type: calc.TypeLED, LED: &calc.LED{
-			TestCurrent: 0.02, ForwardVoltage: calc.Exactly(3), MaxCurrent: ptr(0.03),
+			TestCurrent: 0.02, ForwardVoltage: calc.Exactly(3), MaxCurrent: new(0.03),
 			Model: &calc.LEDModel{Is: 1.85e-23, N: 2.285, Rs: 7.88},
 		}},
 		"npn": {Type: calc.TypeNPN, Transistor: &calc.Transistor{
-			MaxCollectorEmitterVoltage: ptr(45), MaxCollectorCurrent: ptr(0.5), MaxPower: ptr(0.6), MaxJunction: ptr(150),
+			MaxCollectorEmitterVoltage: new(45.0), MaxCollectorCurrent: new(0.5), MaxPower: new(0.6), MaxJunction: new(150.0),
 			HFE:   &calc.Spread{Min: 200, Typ: 200, Max: 200},
-			Model: &calc.GummelPoon{Is: ptr(4.45e-14), Bf: ptr(200), Br: ptr(6)},
+			Model: &calc.GummelPoon{Is: new(4.45e-14), Bf: new(200.0), Br: new(6.0)},
 		}},
 	}
 }
@@ -36,7 +36,7 @@ func tableBuild(volts float64, strings ...calc.String) calc.Build {
 	}
 }
 
-func quarterWatt(ohms float64) calc.Resistor { return calc.Resistor{Ohms: ohms, Watts: ptr(0.25)} }
+func quarterWatt(ohms float64) calc.Resistor { return calc.Resistor{Ohms: ohms, Watts: new(0.25)} }
 
 // seriesTable is three whites and a resistor on 12 V, 20 mA.
 func seriesTable(volts float64) calc.Build {
@@ -60,7 +60,7 @@ func limiterTable() calc.Build {
 // with or without a follower, and with or without a resistor in each base.
 func railTable(buffered bool, baseOhms float64, leds int) calc.Build {
 	b := tableBuild(24)
-	b.Rails = []calc.Rail{{ID: "main", Kind: "reference", Reference: &calc.Reference{Volts: calc.Exactly(3.3), Ohms: 1}, Bias: &calc.Resistor{Ohms: 2200, Watts: ptr(0.5)}}}
+	b.Rails = []calc.Rail{{ID: "main", Kind: "reference", Reference: &calc.Reference{Volts: calc.Exactly(3.3), Ohms: 1}, Bias: &calc.Resistor{Ohms: 2200, Watts: new(0.5)}}}
 	if buffered {
 		r := &b.Rails[0]
 		pulldown := quarterWatt(3300)
@@ -80,23 +80,23 @@ func railTable(buffered bool, baseOhms float64, leds int) calc.Build {
 }
 
 // survey fails the test where the build cannot be surveyed.
-func survey(t testing.TB, b calc.Build) calc.Failures {
-	t.Helper()
+func survey(tb testing.TB, b calc.Build) calc.Failures {
+	tb.Helper()
 	f, err := calc.Survey(b, nil)
 	if err != nil {
-		t.Fatal(err)
+		tb.Fatal(err)
 	}
 	return f
 }
 
 // failing returns the failure of a part of a place.
-func failing(t testing.TB, all calc.Failures, where, role string, how fault.How) calc.Failure {
-	t.Helper()
+func failing(tb testing.TB, all calc.Failures, where, role string, how fault.How) calc.Failure {
+	tb.Helper()
 	for _, f := range all.All {
 		if f.Where == where && f.Role == role && f.How == how {
 			return f
 		}
 	}
-	t.Fatalf("no failure of the %s of %s: %s", role, where, how)
+	tb.Fatalf("no failure of the %s of %s: %s", role, where, how)
 	return calc.Failure{}
 }

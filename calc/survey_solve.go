@@ -21,7 +21,7 @@ type surveyor struct {
 	// string's Quantity that has the fault. Its slot is nil for a fault
 	// elsewhere, and then the string has its whole quantity again.
 	lines  []*line
-	lineAt []standing
+	lineAt []straightLine
 	homes  []home
 	onRail [][]int // the strings on each rail
 
@@ -42,9 +42,9 @@ type surveyor struct {
 	atHome           float64 // [A] out of the supply without a fault
 }
 
-// standing is a string as a straight line round the point it was last solved
+// straightLine is a string as a straight line round the point it was last solved
 // at: what it takes from its feed and from its rail.
-type standing struct {
+type straightLine struct {
 	feed, rail        float64 // [V]
 	draw, drawSlope   float64 // [A], [S] by the feed
 	takes, takesSlope float64 // [A], [S] by the rail
@@ -56,7 +56,7 @@ type standing struct {
 // home is a string without a fault.
 type home struct {
 	state   driver.State
-	at      standing
+	at      straightLine
 	current float64 // [A] through its LEDs
 	power   float64 // [W] in what holds the current
 	limits  []limit
@@ -69,7 +69,6 @@ type railStanding struct {
 type railHome struct {
 	state  driver.State
 	volts  float64
-	draw   float64   // [A]
 	power  []float64 // [W] of each device
 	limits []limit
 }
@@ -113,12 +112,12 @@ func newSurveyor(b *Build) (*surveyor, error) {
 			s.onRail[k] = append(s.onRail[k], l.index)
 		}
 	}
-	s.lineAt = make([]standing, len(s.lines))
+	s.lineAt = make([]straightLine, len(s.lines))
 	s.rails = make([]railStanding, len(p.rails))
 	s.loads = make([]wiring.Load, len(s.lines)+len(p.rails))
 	s.scope = s.all
 	for j, l := range p.strings {
-		s.lineAt[j] = standing{feed: l.Net.Voltage(l.Feed), stale: true}
+		s.lineAt[j] = straightLine{feed: l.Net.Voltage(l.Feed), stale: true}
 		s.lineAt[j].cold = l.runaway != nil
 	}
 	if err := s.settleAir(); err != nil {
@@ -164,7 +163,7 @@ func (s *surveyor) keepHome() {
 	for k, r := range s.p.rails {
 		h := &s.railHomes[k]
 		s.rails[k].touched = false
-		h.volts, h.draw = r.volts, r.Draw()
+		h.volts = r.volts
 		for _, d := range r.Devices {
 			h.power = append(h.power, r.Power(d))
 		}
@@ -242,7 +241,7 @@ func (s *surveyor) patient(i int) error {
 		sick.Net.Hold(sick.Rail, sick.rail.volts)
 	}
 	s.lines[n], s.made, s.patientOf = sick, sick, i
-	s.lineAt[n] = standing{cold: s.homes[i].at.cold}
+	s.lineAt[n] = straightLine{cold: s.homes[i].at.cold}
 	l.quantity = float64(l.spec.Quantity) - 1
 	if err := s.solveLine(n, s.homes[i].at.feed); err != nil {
 		return err

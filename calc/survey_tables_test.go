@@ -198,7 +198,7 @@ func TestTheFollowerCarriesTheOpenString(t *testing.T) {
 func TestASwappedTransistorWithVoltsToSpareLiftsTheRail(t *testing.T) {
 	b := railTable(true, 0, 5)
 	q := *b.Parts["npn"].Transistor
-	q.MaxEmitterBaseVoltage = ptr(6.4)
+	q.MaxEmitterBaseVoltage = new(6.4)
 	b.Parts["npn"] = calc.Part{Type: calc.TypeNPN, Transistor: &q}
 	all := survey(t, b)
 	f := failing(t, all, "string 1", "sink_transistor", fault.Swapped)

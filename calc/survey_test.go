@@ -14,15 +14,15 @@ import (
 )
 
 // surveyed reads a build of testdata.
-func surveyed(t testing.TB, name string) calc.Build {
-	t.Helper()
+func surveyed(tb testing.TB, name string) calc.Build {
+	tb.Helper()
 	raw, err := os.ReadFile(filepath.Join("testdata", filepath.FromSlash(name)))
 	if err != nil {
-		t.Fatal(err)
+		tb.Fatal(err)
 	}
 	b, err := calc.Read(raw)
 	if err != nil {
-		t.Fatal(err)
+		tb.Fatal(err)
 	}
 	return b
 }
@@ -156,7 +156,7 @@ func TestASurveyStopsWhenItIsTold(t *testing.T) {
 	if err != nil {
 		t.Fatal(err)
 	}
-	if calls != 7 || all.Tried != 7 || len(all.All) > 7 || !(all.Total > 7) {
+	if calls != 7 || all.Tried != 7 || len(all.All) > 7 || all.Total <= 7 {
 		t.Errorf("stopped after %d calls with %d of %d tried and %d told", calls, all.Tried, all.Total, len(all.All))
 	}
 }
