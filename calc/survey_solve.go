@@ -484,7 +484,7 @@ func (s *surveyor) solveRail(k int) error {
 func (s *surveyor) balance(k int) error {
 	r := s.p.rails[k]
 	defer r.Load(0, 0)
-	low, high := math.Inf(-1), math.Inf(1)
+	low, high, last := math.Inf(-1), math.Inf(1), math.Inf(1)
 	for range treePatience {
 		takes, slope := 0.0, 0.0
 		add := func(j int, tolerance float64) error {
@@ -526,10 +526,11 @@ func (s *surveyor) balance(k int) error {
 			high = r.volts
 		}
 		next := r.volts + step
-		if !(next > low && next < high) {
+		restless := math.Abs(step) > math.Abs(last)/2 && !math.IsInf(high-low, 0)
+		if restless || !(next > low && next < high) {
 			next = (low + high) / 2
 		}
-		r.volts = next
+		last, r.volts = step, next
 	}
 	return &Unsolved{r.name(), errors.New("rail and strings do not settle")}
 }
