@@ -91,7 +91,7 @@ func newSurveyor(b *Build) (*surveyor, error) {
 	if err != nil {
 		return nil, err
 	}
-	air, err := p.operateOrCold(&Report{})
+	air, err := p.operateOrCold()
 	if err != nil {
 		return nil, err
 	}
