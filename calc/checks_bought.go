@@ -53,10 +53,10 @@ func (b *book) checkInput(l *line, key string) {
 	ceiling := l.worst.Min[figFeed] - *part.InputHigh
 	f.Limit = &ceiling
 	f.Severity = Pass
-	f.Message = fmt.Sprintf("%s: inputs at %s to %s, within %s to %s", key, volts(low), volts(high), volts(*part.InputLow), volts(ceiling))
+	f.Message = fmt.Sprintf("%s: inputs at %s to %s, within %s to %s", b.p.build.nameOf(key), volts(low), volts(high), volts(*part.InputLow), volts(ceiling))
 	if low < *part.InputLow || high > ceiling {
 		f.Severity = Fail
-		f.Message = fmt.Sprintf("%s: inputs at %s to %s, outside %s to %s", key, volts(low), volts(high), volts(*part.InputLow), volts(ceiling))
+		f.Message = fmt.Sprintf("%s: inputs at %s to %s, outside %s to %s", b.p.build.nameOf(key), volts(low), volts(high), volts(*part.InputLow), volts(ceiling))
 	}
 	f.Working = fmt.Sprintf("lowest feed %s − %s = %s", volts(l.worst.Min[figFeed]), volts(*part.InputHigh), volts(ceiling))
 	b.add(f)
@@ -72,10 +72,10 @@ func (b *book) checkLeastLoad(l *line, s *StringReport, key string) {
 		return
 	}
 	f.Severity = Pass
-	f.Message = fmt.Sprintf("%s carries at least %s; it needs %s to regulate", key, amps(least), amps(*part.LeastLoad))
+	f.Message = fmt.Sprintf("%s carries at least %s; it needs %s to regulate", b.p.build.nameOf(key), amps(least), amps(*part.LeastLoad))
 	if least < *part.LeastLoad {
 		f.Severity = Fail
-		f.Message = fmt.Sprintf("%s carries only %s and needs %s to regulate", key, amps(least), amps(*part.LeastLoad))
+		f.Message = fmt.Sprintf("%s carries only %s and needs %s to regulate", b.p.build.nameOf(key), amps(least), amps(*part.LeastLoad))
 	}
 	f.Working = fmt.Sprintf("least worst-case current %s against the least load %s", amps(least), amps(*part.LeastLoad))
 	b.add(f)
@@ -99,9 +99,9 @@ func (b *book) checkWindows(l *line, s *StringReport, key string) {
 			continue
 		}
 		f.Limit = &w.window.Max
-		f.Severity, f.Message = Pass, fmt.Sprintf("%s: %s at %s to %s, within %s to %s", key, w.what, volts(w.low), volts(w.high), volts(w.window.Min), volts(w.window.Max))
+		f.Severity, f.Message = Pass, fmt.Sprintf("%s: %s at %s to %s, within %s to %s", b.p.build.nameOf(key), w.what, volts(w.low), volts(w.high), volts(w.window.Min), volts(w.window.Max))
 		if w.low < w.window.Min || w.high > w.window.Max {
-			f.Severity, f.Message = Fail, fmt.Sprintf("%s: %s at %s to %s, outside %s to %s", key, w.what, volts(w.low), volts(w.high), volts(w.window.Min), volts(w.window.Max))
+			f.Severity, f.Message = Fail, fmt.Sprintf("%s: %s at %s to %s, outside %s to %s", b.p.build.nameOf(key), w.what, volts(w.low), volts(w.high), volts(w.window.Min), volts(w.window.Max))
 		}
 		f.Working = fmt.Sprintf("worst cases %s and %s against the window", volts(w.low), volts(w.high))
 		b.add(f)

@@ -33,12 +33,12 @@ func (b *book) checkLED(l *line, s *StringReport, k int) {
 		b.missing(f, "greatest current (max_current)", key)
 	} else {
 		f.Severity = atMost(most, *part.MaxCurrent, tightRating)
-		f.Message = fmt.Sprintf("%s: at most %s of %s", key, amps(most), amps(*part.MaxCurrent))
+		f.Message = fmt.Sprintf("%s: at most %s of %s", b.p.build.nameOf(key), amps(most), amps(*part.MaxCurrent))
 		f.Working = fmt.Sprintf("worst-case string current %s against the rated %s", amps(most), amps(*part.MaxCurrent))
 		b.add(f)
 	}
 	d := &s.Devices[k]
-	b.checkJunction(l.where(), l.pointer("/driver"), deviceName(d), d, "led-junction", part.MaxJunction, part.RthJunctionAmbient)
+	b.checkJunction(l.where(), l.pointer("/driver"), b.deviceName(d), d, "led-junction", part.MaxJunction, part.RthJunctionAmbient)
 }
 
 // checkJunction verifies a device's junction; name is how the message calls it.
@@ -71,22 +71,22 @@ func (b *book) checkJunction(where, at, name string, d *DeviceReport, code strin
 }
 
 // deviceName names a device in words with its part.
-func deviceName(d *DeviceReport) string {
-	if led, ok := strings.CutPrefix(d.Role, "led_"); ok {
-		return led
+func (b *book) deviceName(d *DeviceReport) string {
+	if strings.HasPrefix(d.Role, "led_") {
+		return b.p.build.nameOf(d.Part)
 	}
 	role := strings.ReplaceAll(d.Role, "_", " ")
 	if d.Part == "" {
 		return role
 	}
-	return role + " " + d.Part
+	return role + " " + b.p.build.nameOf(d.Part)
 }
 
 // checkActive verifies the heat of a transistor, regulator or module of a
 // string or a rail; family is what its codes begin with.
 func (b *book) checkActive(where, at string, d *DeviceReport, family string) {
 	rated := ratingsOf(b.p.build.Parts[d.Part])
-	name := deviceName(d)
+	name := b.deviceName(d)
 	most := d.Power.Max
 	air := b.r.Supply.Inside.Max
 	f := Finding{Code: family + "-power", Where: where, At: at, Value: &most, Unit: "W",
@@ -117,7 +117,7 @@ func (b *book) checkActive(where, at string, d *DeviceReport, family string) {
 func (b *book) checkHolder(l *line, s *StringReport, family string) {
 	d := &s.Devices[l.Holder]
 	rated := ratingsOf(b.p.build.Parts[d.Part])
-	name := deviceName(d)
+	name := b.deviceName(d)
 	volt, ampere := "collector-emitter rating (max_collector_emitter_voltage)", "collector current rating (max_collector_current)"
 	switch l.spec.Driver.Kind {
 	case KindOpampSink:

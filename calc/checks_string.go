@@ -36,7 +36,7 @@ func (b *book) checkString(l *line) {
 		part, what, _ := strings.Cut(assumed, ": ")
 		b.add(Finding{
 			Code: "part-data", Severity: Unknown, Where: l.where(), At: "/parts/" + escapePointer(part),
-			Message: fmt.Sprintf("%s: assumed %s", part, what),
+			Message: fmt.Sprintf("%s: assumed %s", b.p.build.nameOf(part), what),
 			Working: "The part does not say; every figure of this string stands on the assumption.",
 			Source:  sourcePractice,
 		})

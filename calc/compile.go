@@ -34,6 +34,7 @@ type line struct {
 	*driver.Assembly
 	index    int
 	spec     *String
+	build    *Build
 	quantity float64
 	run      int       // index in the tree, −1 at the supply
 	rail     *railLine // on which its base hangs; nil for the other kinds
@@ -67,7 +68,7 @@ func compile(b *Build) (*plant, error) {
 	}
 	for i := range b.Strings {
 		s := &b.Strings[i]
-		l := &line{index: i, spec: s, quantity: float64(s.Quantity), run: -1}
+		l := &line{index: i, spec: s, build: b, quantity: float64(s.Quantity), run: -1}
 		if s.FedBy != "" && s.FedBy != "supply" {
 			l.run = p.runAt[s.FedBy]
 		}

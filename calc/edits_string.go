@@ -43,7 +43,7 @@ func (l *line) largest() int {
 
 func (l *line) ledCount(k, n int, text string) attempt {
 	return attempt{
-		text:  fmt.Sprintf("%s: %d × %s", text, n, l.spec.LEDs[k].Part),
+		text:  fmt.Sprintf("%s: %d × %s", text, n, l.build.nameOf(l.spec.LEDs[k].Part)),
 		patch: []Operation{replace(l.pointer(fmt.Sprintf("/leds/%d/quantity", k)), n)},
 		apply: func(b *Build) { b.Strings[l.index].LEDs[k].Quantity = n },
 	}

@@ -69,7 +69,7 @@ func (b *book) add(f Finding) {
 // missing keeps an unknown finding that says which figure is not given.
 func (b *book) missing(f Finding, figure, whose string) {
 	f.Severity = Unknown
-	f.Message = fmt.Sprintf("cannot tell: %s has no %s", whose, figure)
+	f.Message = fmt.Sprintf("cannot tell: %s has no %s", b.p.build.nameOf(whose), figure)
 	if f.Working == "" {
 		f.Working = "The figure is not in the build; fill it in at the part or resistor."
 	}

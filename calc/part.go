@@ -182,3 +182,33 @@ type SupplyPart struct {
 	SourceResistance float64      `json:"source_resistance,omitempty"`      // [Ω]
 	Derating         [][2]float64 `json:"derating,omitempty"`               // [°C, share of max_current]
 }
+
+// common is what a part carries whatever its type; nil where none is set.
+func (p *Part) common() *Common {
+	switch {
+	case p.LED != nil:
+		return &p.LED.Common
+	case p.Transistor != nil:
+		return &p.Transistor.Common
+	case p.MOSFET != nil:
+		return &p.MOSFET.Common
+	case p.Opamp != nil:
+		return &p.Opamp.Common
+	case p.Regulator != nil:
+		return &p.Regulator.Common
+	case p.Module != nil:
+		return &p.Module.Common
+	case p.Supply != nil:
+		return &p.Supply.Common
+	}
+	return nil
+}
+
+// nameOf is how a part is called: its name, or its key where it has none.
+func (b *Build) nameOf(key string) string {
+	part := b.Parts[key]
+	if c := part.common(); c != nil && c.Name != "" {
+		return c.Name
+	}
+	return key
+}
