@@ -44,6 +44,7 @@ func (s *server) routes() http.Handler {
 		r.Use(maxBody(pageBody))
 		s.shelfRoutes(r)
 		s.buildRoutes(r)
+		s.moreRoutes(r)
 		s.drawerRoutes(r)
 	})
 	return r
