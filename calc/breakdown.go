@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"math"
 	"sort"
+	"strings"
 
 	"lanternbook/calc/driver"
 )
@@ -195,8 +196,12 @@ func (p *plant) knobs(l *line, corner []float64) ([]knob, standing) {
 		})
 	}
 	for k, own := range l.Knobs {
+		name := own.Name
+		if part, ok := strings.CutSuffix(name, " bin"); ok && own.Culprit == driver.Bin {
+			name = p.build.nameOf(part) + " bin"
+		}
 		all = append(all, knob{
-			BreakdownItem{string(own.Culprit), own.Name, 0, l.knobPointer(own)},
+			BreakdownItem{string(own.Culprit), name, 0, l.knobPointer(own)},
 			func(s *standing) { s.turn[k] = corner[k] }, corner[k] != 0,
 		})
 	}

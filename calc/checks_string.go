@@ -53,7 +53,7 @@ func (b *book) checkRunaway(l *line) {
 		return
 	}
 	b.add(Finding{
-		Code: "thermal-runaway", Severity: Fail, Where: l.where(), At: l.pointer("/driver"),
+		Code: runawayCode, Severity: Fail, Where: l.where(), At: l.pointer("/driver"),
 		Message: "a part finds no stable temperature " + when + ": it heats until it fails",
 		Working: "Tj = Tair + Rth · P(Tj) has no solution below 400 °C",
 		Source:  "derivation from the thermal resistance",

@@ -99,6 +99,7 @@ type Assembly struct {
 type Knob struct {
 	Name    string // "sense resistor", "white-2835 bin"
 	Culprit Culprit
+	Below   float64 // [1] share of its spread that lies below typical
 	set     func(turn float64)
 }
 
@@ -344,7 +345,7 @@ func newAssembly(leds []LED) *Assembly {
 		a.Devices = append(a.Devices, Device{Role: "led_" + led.Part, Part: led.Part, kind: isLED, id: k})
 		if led.Shift.Min != 0 || led.Shift.Max != 0 {
 			shift := led.Shift
-			a.knob(led.Part+" bin", Bin, func(turn float64) { c.ShiftLED(a.Stack, k, at(shift, turn)) })
+			a.knob(led.Part+" bin", Bin, shift, func(turn float64) { c.ShiftLED(a.Stack, k, at(shift, turn)) })
 		}
 	}
 	return a
@@ -358,16 +359,20 @@ func at(r Range, turn float64) float64 {
 	return r.Typ + (r.Max-r.Typ)*turn
 }
 
-func (a *Board) knob(name string, culprit Culprit, set func(turn float64)) {
-	a.Knobs = append(a.Knobs, Knob{Name: name, Culprit: culprit, set: set})
+func (a *Board) knob(name string, culprit Culprit, of Range, set func(turn float64)) {
+	below := (of.Typ - of.Min) / (of.Max - of.Min)
+	a.Knobs = append(a.Knobs, Knob{Name: name, Culprit: culprit, Below: below, set: set})
 }
+
+// evenly is the range of what is off as far up as down.
+var evenly = Range{Min: -1, Typ: 0, Max: 1}
 
 // resistor adds a resistor and its tolerance.
 func (a *Board) resistor(role string, from, to circuit.Node, r Resistance) int {
 	id := a.Net.Resistor(from, to, r.Ohms)
 	a.Devices = append(a.Devices, Device{Role: role, kind: isResistor, id: int(id)})
 	if r.Tolerance > 0 {
-		a.knob(roleName(role), Tolerance, func(turn float64) { a.Net.SetOhms(id, r.Ohms*(1+r.Tolerance*turn)) })
+		a.knob(roleName(role), Tolerance, evenly, func(turn float64) { a.Net.SetOhms(id, r.Ohms*(1+r.Tolerance*turn)) })
 	}
 	return len(a.Devices) - 1
 }
@@ -378,13 +383,13 @@ func (a *Board) transistor(role string, collector, base, emitter circuit.Node, q
 	a.Devices = append(a.Devices, Device{Role: role, Part: q.Part, kind: isBJT, id: int(id)})
 	gain, vbe := 1.0, 0.0
 	if q.Gain.Min != q.Gain.Max {
-		a.knob(roleName(role)+" gain", Gain, func(turn float64) {
+		a.knob(roleName(role)+" gain", Gain, q.Gain, func(turn float64) {
 			gain = at(q.Gain, turn)
 			a.Net.Spread(id, gain, vbe)
 		})
 	}
 	if q.VBE.Min != q.VBE.Max {
-		a.knob(roleName(role)+" VBE", Junction, func(turn float64) {
+		a.knob(roleName(role)+" VBE", Junction, q.VBE, func(turn float64) {
 			vbe = at(q.VBE, turn)
 			a.Net.Spread(id, gain, vbe)
 		})
@@ -397,7 +402,7 @@ func (a *Board) reference(n circuit.Node, r Reference) {
 	id := a.Net.Clamp(n, a.Feed, r.Volts.Typ, r.Ohms, r.Tempco)
 	a.Devices = append(a.Devices, Device{Role: "reference", kind: isReference, id: int(id)})
 	if r.Volts.Min != r.Volts.Max {
-		a.knob("reference", Setting, func(turn float64) { a.Net.SetClamp(id, at(r.Volts, turn)) })
+		a.knob("reference", Setting, r.Volts, func(turn float64) { a.Net.SetClamp(id, at(r.Volts, turn)) })
 	}
 }
 

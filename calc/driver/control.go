@@ -36,7 +36,7 @@ func (a *Board) control(ctl Control) circuit.Node {
 		c.Hold(source, at(volts, turned))
 	}
 	if ctl.Volts.Min != ctl.Volts.Max {
-		a.knob("control voltage", Setting, func(turn float64) {
+		a.knob("control voltage", Setting, ctl.Volts, func(turn float64) {
 			turned = turn
 			c.Hold(source, at(volts, turn))
 		})

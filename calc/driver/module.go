@@ -22,7 +22,7 @@ func Module(leds []LED, m Bought) *Assembly {
 	a.Devices = append(a.Devices, Device{Role: "module", Part: m.Part, kind: isModule, id: int(id)})
 	a.Holder, a.SenseAt = len(a.Devices)-1, -1
 	if m.Current.Min != m.Current.Max {
-		a.knob("module current", Setting, func(turn float64) { c.SetSource(id, at(m.Current, turn)) })
+		a.knob("module current", Setting, m.Current, func(turn float64) { c.SetSource(id, at(m.Current, turn)) })
 	}
 	a.Edge = func() float64 { return m.Dropout + openModule }
 	a.start = func(feed float64) { c.Guess(a.Tail, max(m.Dropout, feed/3)) }

@@ -53,13 +53,13 @@ func OpampSink(leds []LED, o Opamp) *Assembly {
 	a.Devices = append(a.Devices, Device{Role: "fet", Part: o.FET.Part, kind: isFET, id: int(fet)})
 	a.Holder = len(a.Devices) - 1
 	if o.FET.Threshold.Min != o.FET.Threshold.Max {
-		a.knob("MOSFET threshold", Junction, func(turn float64) { c.SetThreshold(fet, at(o.FET.Threshold, turn)) })
+		a.knob("MOSFET threshold", Junction, o.FET.Threshold, func(turn float64) { c.SetThreshold(fet, at(o.FET.Threshold, turn)) })
 	}
 	a.SenseAt = a.resistor("sense_resistor", a.Sense, circuit.Ground, o.Sense)
 	amp := c.Amp(a.Control, a.Sense, gate, a.Feed, 0, o.Low, o.High)
 	a.Devices = append(a.Devices, Device{Role: "opamp", Part: o.Part, kind: isAmp, id: int(amp)})
 	if o.Offset > 0 {
-		a.knob("op-amp offset", Setting, func(turn float64) { c.SetOffset(amp, o.Offset*turn) })
+		a.knob("op-amp offset", Setting, evenly, func(turn float64) { c.SetOffset(amp, o.Offset*turn) })
 	}
 	a.Gate, a.High = gate, o.High
 	a.Edge = func() float64 { return c.Voltage(a.Sense) + openFET }

@@ -28,13 +28,13 @@ func Regulator(leds []LED, r Regulated) *Assembly {
 	set := func() { c.SetRegulator(id, reference, adjust, ohms) }
 	a.setOhms = func(v float64) { ohms = v; set() }
 	if r.Reference.Min != r.Reference.Max {
-		a.knob("regulator reference", Setting, func(turn float64) { reference = at(r.Reference, turn); set() })
+		a.knob("regulator reference", Setting, r.Reference, func(turn float64) { reference = at(r.Reference, turn); set() })
 	}
 	if r.Adjust.Min != r.Adjust.Max {
-		a.knob("adjustment current", Setting, func(turn float64) { adjust = at(r.Adjust, turn); set() })
+		a.knob("adjustment current", Setting, r.Adjust, func(turn float64) { adjust = at(r.Adjust, turn); set() })
 	}
 	if r.Set.Tolerance > 0 {
-		a.knob("set resistor", Tolerance, func(turn float64) { ohms = r.Set.Ohms * (1 + r.Set.Tolerance*turn); set() })
+		a.knob("set resistor", Tolerance, evenly, func(turn float64) { ohms = r.Set.Ohms * (1 + r.Set.Tolerance*turn); set() })
 	}
 	a.Edge = func() float64 {
 		current := reference/ohms + adjust

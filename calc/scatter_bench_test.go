@@ -1,0 +1,46 @@
+package calc_test
+
+import (
+	"fmt"
+	"testing"
+
+	"lanternbook/calc"
+)
+
+// sharedRail is a sign as shops build it: n strings of six whites on 24 V, all
+// bases on one rail that a follower drives from a trimmed voltage, each string
+// on its own stretch of cable.
+func sharedRail(n int) calc.Build {
+	v := calc.Spread{Min: 2.15, Typ: 2.2, Max: 2.25}
+	b := followerRail(calc.Control{Volts: &v})
+	b.Rails[0].FedBy = ""
+	one := b.Strings[0]
+	b.Strings, b.Runs = nil, nil
+	from := "supply"
+	for i := range n {
+		id := fmt.Sprintf("r%d", i)
+		b.Runs = append(b.Runs, calc.Run{ID: id, From: from, Length: 0.3, Conductor: "0.75 mm2"})
+		s := one
+		s.Label, s.Quantity, s.FedBy = fmt.Sprint(i+1), 1, id
+		b.Strings = append(b.Strings, s)
+		from = id
+	}
+	return b
+}
+
+// One sample of 24 strings on a rail: solved with rail and cable, every string
+// with its headroom, every check judged.
+func BenchmarkScatter(b *testing.B) {
+	for _, samples := range []int{1000, 10000} {
+		b.Run(fmt.Sprintf("samples=%d", samples), func(b *testing.B) {
+			build := sharedRail(24)
+			b.ReportAllocs()
+			for b.Loop() {
+				if _, err := calc.Scatter(build, samples, 1, nil); err != nil {
+					b.Fatal(err)
+				}
+			}
+			b.ReportMetric(float64(b.Elapsed().Microseconds())/float64(b.N*samples), "µs/sample")
+		})
+	}
+}
