@@ -40,7 +40,7 @@ type CulpritView struct {
 // Widths of a culprit's bar, and from where on it is told by name.
 const (
 	culpritWide Px = 130
-	told           = 0.0005 // [V]
+	told           = 0.001 // [V]
 )
 
 // NewBreakdownView shows the breakdowns of some strings of a build, by index.

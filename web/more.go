@@ -29,10 +29,14 @@ type MoreInput struct {
 // moreTitles are the further sections in the order of the page.
 var moreTitles = []Option{
 	{topicBreakdown, "Who takes the headroom"},
+	{topicFailures, "What one failure does"},
 }
 
 // The further sections, as an address names them.
-const topicBreakdown = "breakdown"
+const (
+	topicBreakdown = "breakdown"
+	topicFailures  = "failures"
+)
 
 func newMore(topic string, in MoreInput) MoreView {
 	id := strconv.FormatInt(in.ID, 10)
