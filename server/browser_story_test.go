@@ -27,7 +27,7 @@ func TestABuildIsMadeMendedAndFoundAgainByKeyboard(t *testing.T) {
 	b.waitKept()
 
 	b.reach("textbox", "how many of LED 1")
-	before := b.figure("left over")
+	before := b.leftOver()
 	if !strings.HasPrefix(before, "2.") {
 		t.Fatalf("three LEDs on 12 V leave %q, want some 2 V", before)
 	}
@@ -36,7 +36,7 @@ func TestABuildIsMadeMendedAndFoundAgainByKeyboard(t *testing.T) {
 	b.wait("the picture to say short", `/[0-9]\sV\sshort/.test(document.getElementById("picture").textContent)`)
 	b.waitKept()
 	b.wantWords("Headroom", "fail")
-	if after := b.figure("left over"); !strings.HasPrefix(after, "−") {
+	if after := b.leftOver(); !strings.HasPrefix(after, "−") {
 		t.Errorf("a fourth LED leaves %q, want less than nothing", after)
 	}
 	b.picture("one LED too many")
@@ -47,11 +47,11 @@ func TestABuildIsMadeMendedAndFoundAgainByKeyboard(t *testing.T) {
 	b.wait("the remedy "+remedy+" to cure it", `!/short/.test(document.getElementById("picture").textContent)`)
 	b.waitKept()
 	b.wantFocusSomewhere("after a remedy")
-	mended := b.figure("left over")
+	mended := b.leftOver()
 	b.picture("mended")
 
 	b.do("reload", reload())
-	if got := b.figure("left over"); got != mended {
+	if got := b.leftOver(); got != mended {
 		t.Errorf("after a reload %q is left over, before it was %q", got, mended)
 	}
 
@@ -75,11 +75,12 @@ func (b *tab) waitKept() {
 	b.wait("the page to say kept", settled)
 }
 
-// figure is the usual value of a row of the first string's readings.
-func (b *tab) figure(name string) string {
+// leftOver is what the first string leaves over on a usual day, as the
+// readings have it.
+func (b *tab) leftOver() string {
 	b.t.Helper()
 	return eval[string](b, `[...document.querySelectorAll("#readings tbody tr")].
-		find(row => row.cells[0].innerText.trim() === `+quote(name)+`).cells[2].innerText.trim()`)
+		find(row => row.cells[0].innerText.trim() === "left over").cells[2].innerText.trim()`)
 }
 
 // wantWords fails for each of the words that the page does not show.
