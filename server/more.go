@@ -16,6 +16,7 @@ import (
 // they are opened. A script gets the section, anybody else a page of its own.
 func (s *server) moreRoutes(r chi.Router) {
 	r.Get("/builds/{id}/more/breakdown", s.page(s.showBreakdown))
+	r.Get("/builds/{id}/more/dial", s.page(s.showDials))
 	r.Get("/builds/{id}/more/failures", s.page(s.showFailures))
 	r.Post("/builds/{id}/more/failures", s.page(s.cureFailure)) // patch= a cure, revision= what it is for
 }

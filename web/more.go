@@ -29,12 +29,14 @@ type MoreInput struct {
 // moreTitles are the further sections in the order of the page.
 var moreTitles = []Option{
 	{topicBreakdown, "Who takes the headroom"},
+	{topicDial, "What turning it gives"},
 	{topicFailures, "What one failure does"},
 }
 
 // The further sections, as an address names them.
 const (
 	topicBreakdown = "breakdown"
+	topicDial      = "dial"
 	topicFailures  = "failures"
 )
 
