@@ -94,6 +94,9 @@ func Breakdown(b Build, i int) (HeadroomBreakdown, error) {
 	if out.Items, err = p.shares(l); err != nil {
 		return HeadroomBreakdown{}, err
 	}
+	if len(out.Items) == 0 {
+		out.Worst = out.Typical // but for what the solver rounds
+	}
 	lowest := l.lowestHeadroom()
 	if out.Usual, err = p.staircase(l, make([]float64, l.turns()), out.Typical); err != nil {
 		return HeadroomBreakdown{}, err

@@ -37,8 +37,10 @@ const (
 	// baseRest is how near in volts to the base a tail counts as held at it:
 	// there the current hardly moves with it.
 	baseRest = 5e-3
-	// needRest is the step in volts at which the least voltage is found.
-	needRest = 1e-4
+	// needRest is the step in volts at which the least voltage is found: the
+	// logarithm of the loss is nearly straight, so that the step itself is right
+	// to some 1e-5 V and needs no solution of its own.
+	needRest = 1e-3
 	// needStep is how far in volts that search goes down at once: saturation
 	// grows tenfold in 60 mV at room temperature, and above it the slope of an
 	// Early effect points far below.
@@ -129,7 +131,8 @@ func (p *plant) settle(volts, air float64) error {
 	return &Unsolved{"(all)", errors.New("strings and cable do not settle")}
 }
 
-// balance brings every rail to where it and its strings agree.
+// balance brings every rail to where it and its strings agree. The strings
+// have been solved with the rail held where it stands.
 func (p *plant) balance() error {
 	for _, r := range p.rails {
 		if err := r.balance(); err != nil {
@@ -156,7 +159,11 @@ func (p *plant) share(volts float64) (moved float64, err error) {
 	p.tree.Solve(volts, p.loads, &p.result)
 	for _, l := range p.strings {
 		feed := p.feedOf(l.run)
-		moved = math.Max(moved, math.Abs(feed-l.Net.Voltage(l.Feed)))
+		step := math.Abs(feed - l.Net.Voltage(l.Feed))
+		moved = math.Max(moved, step)
+		if step < treeRest {
+			continue // it stands where it is to stand
+		}
 		if err := l.at(feed); err != nil {
 			return moved, err
 		}
@@ -351,15 +358,17 @@ func (l *line) findNeed(r *leftOver, high float64) error {
 			high = try
 		}
 		next := math.Max(try+math.Log(loss/lost)*loss/net.HeldSlope(l.Tail), try-needStep)
+		rest := needRest
 		if !(next > low && next < high) {
-			next = (low + high) / 2
+			next, rest = (low+high)/2, needRest/10
 		}
-		if math.Abs(next-try) < needRest {
+		last := try
+		try = next
+		if math.Abs(try-last) < rest {
 			break
 		}
-		try = next
 	}
 	l.clear = try - sense
-	r.need, r.sense = net.Voltage(l.Tail), l.senseVolts()
+	r.need, r.sense = try, l.senseVolts()
 	return nil
 }

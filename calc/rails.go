@@ -80,23 +80,25 @@ func (r *railLine) feedAt(feed float64) error {
 	return nil
 }
 
-// balance brings rail and strings together: each string is solved at the
-// rail's voltage and stands in as a straight line of what it takes more for a
-// volt more, with which the rail is solved again. The rail itself stays free:
-// held at a voltage that is not its own, a follower's heat could run away
-// where in the whole it does not. Strings take more and a rail gives less the
-// higher it stands, so that every trial bounds the answer from one side; a step
-// past a bound, or one that does not come to rest, is taken half way between
-// them.
+// balance brings rail and strings together: each string, which the caller has
+// solved at the rail's voltage, stands in as a straight line of what it takes
+// more for a volt more, with which the rail is solved again. The rail itself
+// stays free: held at a voltage that is not its own, a follower's heat could
+// run away where in the whole it does not. Strings take more and a rail gives
+// less the higher it stands, so that every trial bounds the answer from one
+// side; a step past a bound, or one that does not come to rest, is taken half
+// way between them.
 func (r *railLine) balance() error {
 	defer r.Load(0, 0)
 	low, high, last := math.Inf(-1), math.Inf(1), math.Inf(1)
-	for range treePatience {
+	for k := range treePatience {
 		takes, slope := 0.0, 0.0
 		for _, l := range r.lines {
-			l.Net.Hold(l.Rail, r.volts)
-			if err := l.solve(); err != nil {
-				return err
+			if k > 0 {
+				l.Net.Hold(l.Rail, r.volts)
+				if err := l.solve(); err != nil {
+					return err
+				}
 			}
 			takes += l.quantity * l.Net.HeldCurrent(l.Rail)
 			slope += l.quantity * math.Max(0, l.Net.HeldSlope(l.Rail))

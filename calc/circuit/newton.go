@@ -218,7 +218,7 @@ func (c *Circuit) newton(worst *Unsolved) bool {
 		kelvin := 0.0
 		for i := range c.stacks {
 			if s := &c.stacks[i]; !s.off {
-				moved = math.Max(moved, s.settle(c.v[s.a]-c.v[s.b]))
+				moved = max(moved, s.settle(c.v[s.a]-c.v[s.b]))
 				limited = limited || s.limited
 			}
 		}
@@ -228,9 +228,9 @@ func (c *Circuit) newton(worst *Unsolved) bool {
 				continue
 			}
 			volts, k := q.settle(q.sign*(c.v[q.b]-c.v[q.e]), q.sign*(c.v[q.b]-c.v[q.c]))
-			moved, kelvin = math.Max(moved, volts), math.Max(kelvin, k)
+			moved, kelvin = max(moved, volts), max(kelvin, k)
 			limited = limited || q.limited
-			worst.Celsius = math.Max(worst.Celsius, q.t)
+			worst.Celsius = max(worst.Celsius, q.t)
 		}
 		for i := range c.clamps {
 			k := &c.clamps[i]

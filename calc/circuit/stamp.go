@@ -1,12 +1,16 @@
 package circuit
 
-import "math"
+import (
+	"math"
+
+	"lanternbook/calc/device"
+)
 
 // step prepares the stack's linear stand-in at the present node voltages.
 func (s *ledStack) step(air, vab float64) {
 	lead := &s.leds[s.lead]
 	nvt := lead.Slope()
-	e := math.Exp(math.Min(s.x/nvt, hottest))
+	e := math.Exp(min(s.x/nvt, hottest))
 	current := lead.Is * (e - 1)
 	didx := lead.Is * e / nvt
 	total := current * s.instead
@@ -18,14 +22,19 @@ func (s *ledStack) step(air, vab float64) {
 			s.junction[k] = air
 			s.dvdx += s.count[k] * (1 + lead.Rs*didx)
 		} else {
-			p := s.leds[k].Working(current, air)
+			var p device.LEDPoint
+			if k == s.lead {
+				p = lead.WorkingAt(s.x, current, air)
+			} else {
+				p = s.leds[k].Working(current, air)
+			}
 			s.volts[k], s.junction[k] = p.Voltage, p.Junction
 			s.runaway = s.runaway || p.Runaway && s.count[k] > 0
 			s.dvdx += s.count[k] * p.Slope * didx
 		}
 		total += s.count[k] * s.volts[k]
 	}
-	s.dvdx = math.Max(s.dvdx, smallestTurn)
+	s.dvdx = max(s.dvdx, smallestTurn)
 	s.vab, s.miss = vab, vab-total
 	s.ge = didx / s.dvdx
 	s.ieff = current + s.ge*s.miss
@@ -133,10 +142,10 @@ func (q *bjt) settle(tvbe, tvbc float64) (volts, kelvin float64) {
 	nextBC := q.vbc + q.du0[1] + q.m[1][0]*d0 + q.m[1][1]*d1
 	nextT := q.t + q.du0[2] + q.m[2][0]*d0 + q.m[2][1]*d1
 	be, bc := q.at.LimitBE(nextBE, q.vbe), q.at.LimitBC(nextBC, q.vbc)
-	t := math.Max(q.t-warmest, math.Min(q.t+warmest, nextT))
-	t = math.Max(coldest, math.Min(melting, t))
+	t := max(q.t-warmest, min(q.t+warmest, nextT))
+	t = max(coldest, min(melting, t))
 	q.limited = be != nextBE || bc != nextBC || t != nextT
-	volts = math.Max(math.Abs(be-q.vbe), math.Abs(bc-q.vbc))
+	volts = max(math.Abs(be-q.vbe), math.Abs(bc-q.vbc))
 	kelvin = math.Abs(t - q.t)
 	q.vbe, q.vbc, q.t = be, bc, t
 	return volts, kelvin

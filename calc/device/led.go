@@ -48,8 +48,14 @@ type LEDPoint struct {
 //
 // Source: derivation, from the equation of LED and Tj = Tair + rth·V·I.
 func (d *LED) Working(current, celsius float64) LEDPoint {
+	return d.WorkingAt(d.Slope()*math.Log1p(current/d.Is), current, celsius)
+}
+
+// WorkingAt is Working for a current whose inner voltage n·VT·ln(1 + I/is) is
+// known in volts; its logarithm is half of what Working costs.
+func (d *LED) WorkingAt(inner, current, celsius float64) LEDPoint {
 	nvt := d.Slope()
-	cold := nvt*math.Log1p(current/d.Is) + current*d.Rs
+	cold := inner + current*d.Rs
 	slope := nvt/(current+d.Is) + d.Rs
 	if d.Rth == 0 || current <= 0 {
 		return LEDPoint{Voltage: cold + d.Tempco*(celsius-RatedC), Slope: slope, Junction: celsius}
@@ -77,5 +83,8 @@ const runawayFloor = 1e-3
 // Limit returns a junction voltage that a Newton step may take.
 func (d *LED) Limit(next, last float64) float64 {
 	nvt := d.Slope()
+	if math.Abs(next-last) <= 2*nvt {
+		return next // as limit would, without the logarithm of the critical voltage
+	}
 	return limit(next, last, nvt, nvt*math.Log(nvt/(math.Sqrt2*d.Is)))
 }
