@@ -134,6 +134,7 @@ func dividerSink(t *testing.T, gain float64) sunkPoint {
 	c.Resistor(emitter, circuit.Ground, 1e3)
 	q := c.BJT(collector, base, emitter, idealNPN(0.7, 1.1033e-3, gain), false, 0)
 	solve(t, c)
+	near(t, "the resistor that gives this current", driver.SenseResistance(c.Voltage(emitter), c.CollectorCurrent(q), gain), 1e3, 0.1)
 	return sunkPoint{c.CollectorCurrent(q), c.Voltage(collector) - c.Voltage(emitter)}
 }
 
