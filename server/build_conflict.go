@@ -43,10 +43,7 @@ func (e *buildEdit) stale(ctx context.Context, revision string) error {
 // counts as this page's edit.
 func (e *buildEdit) base(ctx context.Context, revision string) (store.Build, error) {
 	old := e.page.kept
-	number, err := strconv.ParseInt(revision, 10, 64)
-	if err != nil {
-		return old, nil
-	}
+	number, _ := strconv.ParseInt(revision, 10, 64) // what is no number is 0, which no revision has
 	document, err := e.s.store.Revision(ctx, old.ID, number)
 	if errors.Is(err, store.ErrNotFound) {
 		return old, nil

@@ -85,7 +85,7 @@ func TestDraft(t *testing.T) {
 			if err != nil {
 				t.Fatal(err)
 			}
-			if err := c.edit(d); err != nil {
+			if err = c.edit(d); err != nil {
 				t.Fatal(err)
 			}
 			patch, err := d.patch()

@@ -128,8 +128,8 @@ func TestFittedRating(t *testing.T) {
 
 // boughtStock is a drawer with one of each part that no string of the bench
 // has: op-amp, MOSFET, regulator, module.
-func boughtStock(t testing.TB) []web.Stock {
-	t.Helper()
+func boughtStock(tb testing.TB) []web.Stock {
+	tb.Helper()
 	var stock []web.Stock
 	for key, document := range map[string]string{
 		"lm358":  `{"type":"opamp","offset_voltage":0.007,"input_low":0,"input_high":1.5,"output_low":0.02,"output_high":1.5,"supply_current":0.0007}`,
@@ -139,7 +139,7 @@ func boughtStock(t testing.TB) []web.Stock {
 	} {
 		part, err := calc.ReadPart([]byte(document))
 		if err != nil {
-			t.Fatal(err)
+			tb.Fatal(err)
 		}
 		stock = append(stock, web.Stock{Key: key, Part: part, Document: []byte(document)})
 	}
@@ -162,11 +162,11 @@ func TestRails(t *testing.T) {
 	raw := applied(t, document, d)
 	volts := map[string]float64{}
 	for _, kind := range []string{web.RailReference, web.RailBuffered, web.RailFollower} {
-		b, form, d := buildOn(t, raw)
-		if faults := (formText{form.Rails[0].Kind.Name: kind}).write(d, form, b, nil, nil); len(faults) > 0 {
+		of, fields, edit := buildOn(t, raw)
+		if faults := (formText{fields.Rails[0].Kind.Name: kind}).write(edit, fields, of, nil, nil); len(faults) > 0 {
 			t.Fatalf("%s: %v", kind, faults)
 		}
-		next := patched(t, raw, d)
+		next := patched(t, raw, edit)
 		report, err := calc.Check(next)
 		if err != nil {
 			t.Fatalf("%s: %v", kind, err)

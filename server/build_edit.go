@@ -3,6 +3,7 @@ package main
 import (
 	"context"
 	"errors"
+	"maps"
 	"net/http"
 	"net/url"
 	"strconv"
@@ -30,7 +31,7 @@ func (s *server) edit(w http.ResponseWriter, r *http.Request, what string) error
 	if err != nil {
 		return err
 	}
-	if err := r.ParseForm(); err != nil {
+	if err = r.ParseForm(); err != nil {
 		return err
 	}
 	kept, err := s.store.Build(r.Context(), id)
@@ -38,7 +39,7 @@ func (s *server) edit(w http.ResponseWriter, r *http.Request, what string) error
 		return err
 	}
 	e := newEdit(s, kept, r.PostForm, what)
-	if err := e.run(r.Context()); err != nil {
+	if err = e.run(r.Context()); err != nil {
 		return err
 	}
 	return s.answerEdit(w, r, e)
@@ -126,9 +127,7 @@ func (e *buildEdit) keep(ctx context.Context) error {
 			return err
 		}
 		e.page.faults = e.texts.write(d, form, e.page.b, e.page.drawer, refused)
-		for name, reason := range refused {
-			e.page.faults[name] = reason
-		}
+		maps.Copy(e.page.faults, refused)
 		err = e.change(ctx, d)
 		var invalid calc.Invalid
 		if !errors.As(err, &invalid) {
@@ -283,8 +282,7 @@ func (e *buildEdit) remedy(ctx context.Context, offered []calc.Finding) error {
 		return nil
 	}
 	err := e.change(ctx, &draft{ops: remedy.Patch})
-	var invalid calc.Invalid
-	if errors.As(err, &invalid) {
+	if invalid, ok := errors.AsType[calc.Invalid](err); ok {
 		e.page.notice = "This cannot be done: " + invalid.Error()
 		return nil
 	}

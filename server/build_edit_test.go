@@ -20,8 +20,9 @@ type buildTab struct {
 }
 
 // openBuild imports a document and opens its page.
-func openBuild(t testing.TB, document string) *buildTab {
-	p := openShop(t)
+func openBuild(tb testing.TB, document string) *buildTab {
+	tb.Helper()
+	p := openShop(tb)
 	return p.openBuild(strings.Replace(p.importBuild(document), "/api", "", 1))
 }
 
@@ -72,20 +73,20 @@ func (b *buildTab) kept() calc.Build {
 }
 
 // between returns what stands between two texts.
-func between(t testing.TB, s, before, after string) string {
-	t.Helper()
+func between(tb testing.TB, s, before, after string) string {
+	tb.Helper()
 	_, rest, found := strings.Cut(s, before)
 	middle, _, ends := strings.Cut(rest, after)
 	if !found || !ends {
-		t.Fatalf("no %q with a %q after it in: %.400s", before, after, s)
+		tb.Fatalf("no %q with a %q after it in: %.400s", before, after, s)
 	}
 	return html.UnescapeString(middle)
 }
 
 // fault is the reason beside a field.
-func fault(t testing.TB, a answer, id string) string {
-	t.Helper()
-	return between(t, a.body, fmt.Sprintf(`<p class="error" id="%s-error">`, id), "</p>")
+func fault(tb testing.TB, a answer, id string) string {
+	tb.Helper()
+	return between(tb, a.body, fmt.Sprintf(`<p class="error" id="%s-error">`, id), "</p>")
 }
 
 func TestBuildPageShowsTheBuild(t *testing.T) {
@@ -248,7 +249,7 @@ func TestBuildRemedy(t *testing.T) {
 	document := strings.Replace(tide(t), `"part": "white-2835", "quantity": 6`, `"part": "white-2835", "quantity": 8`, 1)
 	b := openBuild(t, document)
 	page := b.do(http.MethodGet, b.page, "")
-	row := between(t, page.body, `<li class="check fail">`, "</li>")
+	row := between(t, page.body, `<li class="check fail"`, "</li>")
 	if !strings.Contains(row, "Headroom") {
 		t.Fatalf("eight LEDs on 24 V do not fail by headroom: %s", row)
 	}

@@ -137,7 +137,7 @@ func writeWords(d *draft, e *web.Entry, text string) error {
 
 func readTags(text string) []string {
 	tags := []string{}
-	for _, tag := range strings.Split(text, ",") {
+	for tag := range strings.SplitSeq(text, ",") {
 		if tag = strings.TrimSpace(tag); tag != "" && !slices.Contains(tags, tag) {
 			tags = append(tags, tag)
 		}

@@ -15,20 +15,23 @@ import (
 )
 
 // bench is a build with every kind of entry in it.
-func bench(t testing.TB) string { return testFile(t, "bench.json") }
+func bench(tb testing.TB) string {
+	tb.Helper()
+	return testFile(tb, "bench.json")
+}
 
 // sampleDocuments are all the documents that the tests and a first start have.
-func sampleDocuments(t testing.TB) map[string]string {
-	t.Helper()
-	samples := map[string]string{"bench": bench(t), "tide": tide(t), "shelf": shelfLight(t)}
+func sampleDocuments(tb testing.TB) map[string]string {
+	tb.Helper()
+	samples := map[string]string{"bench": bench(tb), "tide": tide(tb), "shelf": shelfLight(tb)}
 	files, err := filepath.Glob("seed/builds/*.json")
 	if err != nil || len(files) == 0 {
-		t.Fatalf("no builds of a first start: %v", err)
+		tb.Fatalf("no builds of a first start: %v", err)
 	}
 	for _, file := range files {
 		content, err := os.ReadFile(file)
 		if err != nil {
-			t.Fatal(err)
+			tb.Fatal(err)
 		}
 		samples[file] = string(content)
 	}
@@ -36,15 +39,15 @@ func sampleDocuments(t testing.TB) map[string]string {
 }
 
 // buildOn reads a document and makes its form.
-func buildOn(t testing.TB, document string, drawer ...web.Stock) (calc.Build, web.BuildForm, *draft) {
-	t.Helper()
+func buildOn(tb testing.TB, document string, drawer ...web.Stock) (calc.Build, web.BuildForm, *draft) {
+	tb.Helper()
 	b, err := calc.Read([]byte(document))
 	if err != nil {
-		t.Fatalf("sample does not read: %v", err)
+		tb.Fatalf("sample does not read: %v", err)
 	}
 	d, err := newDraft([]byte(document))
 	if err != nil {
-		t.Fatal(err)
+		tb.Fatal(err)
 	}
 	return b, web.NewBuildForm(b, drawer), d
 }
@@ -70,7 +73,7 @@ func TestFormTextsMeanTheirValues(t *testing.T) {
 	for name, document := range sampleDocuments(t) {
 		b, form, d := buildOn(t, document)
 		for _, e := range form.Entries() {
-			if _, has := d.get(e.Name); !has || e.Kind == web.EntryDriver || e.Kind == web.EntryControl || e.Kind == web.EntryEnclosure {
+			if _, has := d.get(e.Name); !has || e.Rebuilds && e.Kind != web.EntryPart {
 				continue // not given, or a choice that fills in anew
 			}
 			if err := writeEntry(d, e, strings.TrimSpace(e.Value), b, nil); err != nil {
@@ -146,7 +149,7 @@ func TestFormFields(t *testing.T) {
 		{name: "fed by another run", field: "/strings/0/fed_by", text: "r3", patch: `[{"op":"replace","path":"/strings/0/fed_by","value":"r3"}]`},
 		{name: "straight at the supply", field: "/strings/0/fed_by", text: "", patch: `[{"op":"remove","path":"/strings/0/fed_by"}]`},
 		{name: "fed by a run that there is not", field: "/strings/0/fed_by", text: "r9", fault: "choose"},
-		{name: "a run from another", field: "/runs/2/from", text: "r2", patch: `[{"op":"replace","path":"/runs/2/from","value":"r2"}]`},
+		{name: "a run from another", field: "/runs/2/from", text: "r1", patch: `[{"op":"replace","path":"/runs/2/from","value":"r1"}]`},
 		{name: "a run from itself", field: "/runs/2/from", text: "r3", fault: "choose"},
 		{name: "a length in feet", field: "/runs/0/length", text: "10 ft", patch: `[{"op":"replace","path":"/runs/0/length","value":3.048}]`},
 		{name: "a conductor in mm²", field: "/runs/0/conductor", text: "1,5", patch: `[{"op":"replace","path":"/runs/0/conductor","value":"1.5 mm2"}]`},

@@ -211,10 +211,6 @@ func swapRows(d *draft, list string, i int) (renamed, error) {
 	if _, next := d.get(list + "/" + strconv.Itoa(i+1)); !has || !next {
 		return unmoved, nil // the first cannot go up, nor the last down
 	}
-	row, err := asTree(row)
-	if err != nil {
-		return unmoved, err
-	}
 	if err := d.remove(at); err != nil {
 		return unmoved, err
 	}

@@ -22,7 +22,7 @@ func TestRowCommand(t *testing.T) {
 	const (
 		labels = "A B C D E F"
 		leds   = "2 white, 3 red"
-		runs   = "r1<supply r2<r1 r3<supply"
+		runs   = "r1<supply r2<r1 r3<r2"
 		fed    = "r1 r2 - - - -"
 		at     = "/strings/1/leds/1/quantity"
 	)
@@ -42,8 +42,8 @@ func TestRowCommand(t *testing.T) {
 		{name: "one LED more", command: "more /strings/1/leds/0/quantity", labels: labels, leds: "3 white, 3 red", runs: runs, fed: fed, moved: at},
 		{name: "one LED fewer", command: "fewer /strings/1/leds/1/quantity", labels: labels, leds: "2 white, 2 red", runs: runs, fed: fed, moved: at},
 		{name: "add a run", command: "run-add /strings", labels: labels, leds: leds, runs: runs + " r4<supply", fed: fed, moved: at},
-		{name: "remove a run in the middle", command: "run-remove /runs/0", labels: labels, leds: leds, runs: "r2<supply r3<supply", fed: "- r2 - - - -", moved: at},
-		{name: "remove a run at an end", command: "run-remove /runs/1", labels: labels, leds: leds, runs: "r1<supply r3<supply", fed: "r1 r1 - - - -", moved: at},
+		{name: "remove the run at the supply", command: "run-remove /runs/0", labels: labels, leds: leds, runs: "r2<supply r3<r2", fed: "- r2 - - - -", moved: at},
+		{name: "remove a run between others", command: "run-remove /runs/1", labels: labels, leds: leds, runs: "r1<supply r3<r1", fed: "r1 r1 - - - -", moved: at},
 	}
 	for _, c := range cases {
 		t.Run(c.name, func(t *testing.T) {
@@ -142,25 +142,29 @@ func TestRowCopyIsItsOwn(t *testing.T) {
 }
 
 // patched is what the draft's patch makes of the document, read strictly.
-func patched(t testing.TB, document string, d *draft) calc.Build {
-	t.Helper()
-	b, err := calc.Read([]byte(applied(t, document, d)))
+func patched(tb testing.TB, document string, d *draft) calc.Build {
+	tb.Helper()
+	b, err := calc.Read([]byte(applied(tb, document, d)))
 	if err != nil {
-		t.Fatal(err)
+		tb.Fatal(err)
 	}
 	return b
 }
 
 // applied is the document that a draft makes.
-func applied(t testing.TB, document string, d *draft) string {
-	t.Helper()
+func applied(tb testing.TB, document string, d *draft) string {
+	tb.Helper()
 	patch, err := d.patch()
 	if err != nil {
-		t.Fatal(err)
+		tb.Fatal(err)
 	}
 	after, err := applyPatch([]byte(document), patch)
 	if err != nil {
-		t.Fatalf("patch %s: %v", patch, err)
+		tb.Fatalf("patch %s: %v", patch, err)
+	}
+	tree, err := decodeTree(after)
+	if err != nil || !sameJSON(tree, d.tree) {
+		tb.Fatalf("patch %s makes another document than the draft has: %v", patch, err)
 	}
 	return string(after)
 }

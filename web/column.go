@@ -2,6 +2,7 @@ package web
 
 import (
 	"fmt"
+	"slices"
 	"strconv"
 	"strings"
 
@@ -169,8 +170,7 @@ func pieces(b calc.Build, i int, c calc.Column, at string) []piece {
 		{kind: "left", volts: c.LeftOver, count: 1, name: "left over", href: "#string-" + strings.TrimPrefix(at, "/strings/"),
 			voice: "left over, " + quantity.Format(c.LeftOver, quantity.Volt, 3)},
 	}
-	for j := len(c.LEDs) - 1; j >= 0; j-- {
-		led := c.LEDs[j]
+	for j, led := range slices.Backward(c.LEDs) {
 		total := led.Each * float64(led.Quantity)
 		light, name := Light{Word: led.Part}, led.Part
 		if part, ok := b.Parts[led.Part]; ok && part.LED != nil {

@@ -1,6 +1,10 @@
 package web
 
-import "lanternbook/calc"
+import (
+	"slices"
+
+	"lanternbook/calc"
+)
 
 // SmallPicture is the columns of a build drawn small, without words: what
 // stands for the build on the shelf.
@@ -69,13 +73,13 @@ func smallStack(str SmallString, s Scale, f Frame) SmallColumn {
 	add("sense", c.Sense, "")
 	add("driver", c.Driver, "")
 	add("left", c.LeftOver, "")
-	for j := len(c.LEDs) - 1; j >= 0; j-- {
+	for j, led := range slices.Backward(c.LEDs) {
 		light := Emitted(calc.LED{})
 		if j < len(str.Lights) {
 			light = str.Lights[j]
 		}
-		for range c.LEDs[j].Quantity {
-			add("led", c.LEDs[j].Each, light.Fill)
+		for range led.Quantity {
+			add("led", led.Each, light.Fill)
 		}
 	}
 	add("run", c.Run, "")
