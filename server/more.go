@@ -17,6 +17,8 @@ import (
 func (s *server) moreRoutes(r chi.Router) {
 	r.Get("/builds/{id}/more/breakdown", s.page(s.showBreakdown))
 	r.Get("/builds/{id}/more/dial", s.page(s.showDials))
+	r.Get("/builds/{id}/more/spread", s.page(s.showSpread))
+	r.Post("/builds/{id}/more/spread", s.page(s.drawSpread)) // samples=, seed=; or do=stop
 	r.Get("/builds/{id}/more/failures", s.page(s.showFailures))
 	r.Post("/builds/{id}/more/failures", s.page(s.cureFailure)) // patch= a cure, revision= what it is for
 }

@@ -107,6 +107,7 @@ func (s *server) serveUntil(ctx context.Context, listener net.Listener, stdout, 
 		return fmt.Errorf("stopped serving: %w", err)
 	case <-ctx.Done():
 	}
+	s.scatters.close()
 	patience, cancel := context.WithTimeout(context.WithoutCancel(ctx), stopTime)
 	defer cancel()
 	if err := web.Shutdown(patience); err != nil {

@@ -14,20 +14,22 @@ import (
 	"lanternbook/store"
 )
 
-// server is what the handlers share. It holds no state of its own: everything
-// that must last is in the store.
+// server is what the handlers share. Everything that must last is in the store;
+// of its own it has only the draws that run.
 type server struct {
 	store *store.Store
 	now   func() time.Time
 	log   *slog.Logger
 	hosts hostList
+
+	scatters *scatterJobs
 }
 
 // newServer returns a server on an open store. listen is the address it will
 // be reached at, as given to -listen: its host joins the loopback names that
 // the server answers to.
 func newServer(st *store.Store, now func() time.Time, log *slog.Logger, listen string) *server {
-	return &server{store: st, now: now, log: log, hosts: hostsFor(listen)}
+	return &server{store: st, now: now, log: log, hosts: hostsFor(listen), scatters: newScatterJobs()}
 }
 
 // routed is a handler that may fail. What answers the failure is the wrapper

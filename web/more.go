@@ -30,6 +30,7 @@ type MoreInput struct {
 var moreTitles = []Option{
 	{topicBreakdown, "Who takes the headroom"},
 	{topicDial, "What turning it gives"},
+	{topicSpread, "How many of them will pass"},
 	{topicFailures, "What one failure does"},
 }
 
@@ -38,6 +39,7 @@ const (
 	topicBreakdown = "breakdown"
 	topicDial      = "dial"
 	topicFailures  = "failures"
+	topicSpread    = "spread"
 )
 
 func newMore(topic string, in MoreInput) MoreView {
