@@ -258,17 +258,7 @@ func (e *buildEdit) travel(ctx context.Context, where func(context.Context, int6
 		return err
 	}
 	e.page.kept, e.page.b, e.page.report = kept, b, report
-	e.texts = only(e.texts, e.page.faults) // the others are kept, and undone
 	return nil
-}
-
-// only returns the texts that have a fault.
-func only(texts formText, faults map[string]string) formText {
-	left := formText{}
-	for name := range faults {
-		left[name] = texts[name]
-	}
-	return left
 }
 
 // remedy applies an edit that the checks offered. Which one, the page says by
@@ -286,7 +276,6 @@ func (e *buildEdit) remedy(ctx context.Context, offered []calc.Finding) error {
 		e.page.notice = "This cannot be done: " + invalid.Error()
 		return nil
 	}
-	e.texts = only(e.texts, e.page.faults)
 	return err
 }
 
