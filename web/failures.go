@@ -70,7 +70,7 @@ func NewFailuresView(in MoreInput, found calc.Failures) FailuresView {
 		row := FailureRow{Where: f.Where, Href: v.More.link(fieldOf(f.At, entries)), Fault: f.Fault, Comes: comes(f), Reads: failureReads(in.Build, f)}
 		for k, o := range f.Over {
 			if k == mostOver {
-				row.Burns = append(row.Burns, strconv.Itoa(f.Beyond-mostOver)+" limits more")
+				row.Burns = append(row.Burns, "and "+strconv.Itoa(f.Beyond-mostOver)+" more")
 				break
 			}
 			row.Burns = append(row.Burns, burns(in.Build, f, o))
@@ -132,7 +132,7 @@ func others(b calc.Build, f *calc.Failure) []string {
 	var list []string
 	for k, c := range f.Others {
 		if k == mostOthers {
-			return append(list, strconv.Itoa(len(f.Others)-mostOthers)+" strings more")
+			return append(list, "and "+strconv.Itoa(len(f.Others)-mostOthers)+" more")
 		}
 		if c.String < 0 || c.String >= len(b.Strings) {
 			continue
