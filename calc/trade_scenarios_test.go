@@ -203,3 +203,50 @@ func TestArcadeKnownBinAllowsOneLEDMore(t *testing.T) {
 	known := strung(t, check(t, b), "Shelf 6")
 	near(t, "headroom of the known reel", known.Headroom.Min, 0.5, 0.35)
 }
+
+func TestBakeryRailSetsElevenStrings(t *testing.T) {
+	r := check(t, demo(t, "corner-bakery"))
+	grid := strung(t, r, "Grid rows")
+	roughly(t, "current", grid.Current.Typ, 60.6e-3, 0.03)
+	near(t, "emitter", *grid.Voltages.Sense, 2.0, 0.05)
+	roughly(t, "supply power", r.Supply.Power.Typ, 16, 0.03)
+	near(t, "headroom on a cold day", grid.Headroom.Min, 1.5, 0.25)
+	sink := deviceIn(t, grid, "sink_transistor")
+	roughly(t, "transistor heat", sink.Power.Typ, 0.26, 0.05)
+	roughly(t, "transistor heat in the hot corner", sink.Power.Max, 0.38, 0.05)
+	roughly(t, "sense resistor", deviceIn(t, grid, "sense_resistor").Power.Typ, 0.121, 0.03)
+}
+
+func TestLanternTakesFourAmbersAndNotFive(t *testing.T) {
+	b := demo(t, "lantern-no-4")
+	r := check(t, b)
+	amber := strung(t, r, "Amber flame")
+	roughly(t, "current", amber.Current.Typ, 18e-3, 0.05)
+	roughly(t, "whole load", r.Supply.Current.Typ, 0.114, 0.05)
+	near(t, "emitter", *amber.Voltages.Sense, 1.22, 0.06)
+	near(t, "headroom on a flat battery", amber.Headroom.Min, 12.0-11.6, 0.25)
+	b.Strings[0].LEDs[0].Quantity = 5
+	if five := strung(t, check(t, b), "Amber flame"); five.Regulates {
+		t.Errorf("five should go out before the battery is flat: headroom %.2f V", five.Headroom.Min)
+	}
+}
+
+// A reel that measures 2.02 V instead of 2.14 V gives half a volt.
+func TestLanternMeasuredReelGivesHalfAVolt(t *testing.T) {
+	b := demo(t, "lantern-no-4")
+	part := b.Parts["amber-5mm"]
+	before := 0.0
+	for _, volts := range []float64{2.14, 2.02} {
+		reel := *part.LED
+		reel.ForwardVoltage, reel.Model = calc.Exactly(volts), nil
+		b.Parts["amber-5mm"] = calc.Part{Type: part.Type, LED: &reel}
+		amber := strung(t, check(t, b), "Amber flame")
+		if before != 0 {
+			near(t, "headroom gained", amber.Headroom.Typ-before, 0.5, 0.1)
+		}
+		before = amber.Headroom.Typ
+	}
+	b.Supply.Voltage = calc.Exactly(16.8)
+	full := deviceIn(t, strung(t, check(t, b), "Amber flame"), "sink_transistor")
+	roughly(t, "heat on a full battery", full.Power.Typ, 0.13, 0.1)
+}

@@ -20,7 +20,9 @@ var seedFiles embed.FS
 
 // seedBuilds are the builds of a first start as they are put on the shelf: the
 // last lies on top.
-var seedBuilds = []string{"wren-cabin-lights", "arcade-jewellers", "fernhollow-halt", "harbour-letters"}
+var seedBuilds = []string{
+	"lantern-no-4", "corner-bakery", "wren-cabin-lights", "arcade-jewellers", "fernhollow-halt", "harbour-letters",
+}
 
 // seedPart is a part of a first start.
 type seedPart struct {
