@@ -147,9 +147,9 @@ func (d *dialler) row(r *row, v float64) error {
 		if !stable {
 			continue
 		}
-		w, err := l.search(l.reach, nil)
-		if err != nil {
-			return d.unsolvedDial(v, err)
+		w, wrong := l.search(l.reach, nil)
+		if wrong != nil {
+			return d.unsolvedDial(v, wrong)
 		}
 		if math.IsNaN(w.Typ[figCurrent]) || math.IsNaN(w.Typ[figHeadroom]) {
 			stable = false

@@ -30,7 +30,7 @@ func table(t testing.TB, name string) []map[string]string {
 	if err != nil {
 		t.Fatal(err)
 	}
-	defer file.Close()
+	defer func() { _ = file.Close() }()
 	lines, err := csv.NewReader(file).ReadAll()
 	if err != nil {
 		t.Fatal(err)

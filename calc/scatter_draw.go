@@ -248,8 +248,7 @@ func (s *sampler) refused(err error) {
 		return
 	}
 	where := "build"
-	var u *Unsolved
-	if errors.As(err, &u) {
+	if u, ok := errors.AsType[*Unsolved](err); ok {
 		where = s.named(u.String)
 	}
 	for k := range s.result.Checks {

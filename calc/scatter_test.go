@@ -100,7 +100,7 @@ func exactly(b calc.Build) calc.Build {
 		panic(err)
 	}
 	var v any
-	if err := json.Unmarshal(raw, &v); err != nil {
+	if err = json.Unmarshal(raw, &v); err != nil {
 		panic(err)
 	}
 	raw, err = json.Marshal(typicalOnly(v))
@@ -181,7 +181,7 @@ func TestSamplesAreJudgedAsReportsAre(t *testing.T) {
 		}
 		slices.Sort(got)
 		slices.Sort(want)
-		for k := 0; k < max(len(got), len(want)); k++ {
+		for k := range max(len(got), len(want)) {
 			if k >= len(got) || k >= len(want) || got[k] != want[k] {
 				t.Errorf("%s: from %v on, the report has %v", name, got[min(k, len(got)):min(k+3, len(got))], want[min(k, len(want)):min(k+3, len(want))])
 				break
@@ -287,7 +287,7 @@ func TestScatterStops(t *testing.T) {
 		return len(told) < 2
 	})
 	var stopped *calc.Stopped
-	if !errors.As(err, &stopped) || len(told) != 2 || stopped.Done != told[1] || !(told[0] < told[1] && told[1] < 5000) {
+	if !errors.As(err, &stopped) || len(told) != 2 || stopped.Done != told[1] || told[0] >= told[1] || told[1] >= 5000 {
 		t.Errorf("error %v after being told %v", err, told)
 	}
 	for _, n := range []int{0, -1, calc.MostSamples + 1} {

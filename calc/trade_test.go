@@ -79,8 +79,9 @@ func check(t testing.TB, b calc.Build) calc.Report {
 	return r
 }
 
-// follower is a sink with a PNP follower.
-func follower(control, pullup, sense float64) calc.Driver {
+// follower is a sink with a PNP follower and a sense resistor of 1 kΩ.
+func follower(control, pullup float64) calc.Driver {
+	const sense = 1000
 	v := calc.Exactly(control)
 	return calc.Driver{Kind: calc.KindFollowerSink, FollowerSink: &calc.FollowerSink{
 		Kind: calc.KindFollowerSink, Control: calc.Control{Volts: &v}, PNP: "bc557b", NPN: "bc547b",
@@ -109,20 +110,20 @@ func roughly(t testing.TB, name string, got, want, share float64) {
 
 func TestFollowerSinkPassesSetVoltageOverSenseResistance(t *testing.T) {
 	for _, c := range []struct{ control, want float64 }{{1, 1e-3}, {2, 2e-3}} {
-		r := check(t, bench(t, 10, 1, "red-5mm", follower(c.control, 10e3, 1000)))
+		r := check(t, bench(t, 10, 1, "red-5mm", follower(c.control, 10e3)))
 		roughly(t, "current", r.Strings[0].Current.Typ, c.want, 0.05)
 	}
 }
 
 func TestFollowersEmitterSitsOneJunctionAboveItsBase(t *testing.T) {
-	v := check(t, bench(t, 10, 1, "red-5mm", follower(1, 10e3, 1000))).Strings[0].Voltages
+	v := check(t, bench(t, 10, 1, "red-5mm", follower(1, 10e3))).Strings[0].Voltages
 	near(t, "emitter above base", *v.Base-*v.Control, 0.6, 0.06)
 }
 
 func TestTwoRedLEDsAreOneTooManyForSevenVoltsOfControlOnTen(t *testing.T) {
 	const wanted = 7e-3
-	one := check(t, bench(t, 10, 1, "red-5mm", follower(7, 1000, 1000))).Strings[0]
-	two := check(t, bench(t, 10, 2, "red-5mm", follower(7, 1000, 1000))).Strings[0]
+	one := check(t, bench(t, 10, 1, "red-5mm", follower(7, 1000))).Strings[0]
+	two := check(t, bench(t, 10, 2, "red-5mm", follower(7, 1000))).Strings[0]
 	roughly(t, "with one LED", one.Current.Typ, wanted, 0.03)
 	if !one.Regulates {
 		t.Error("with one LED the string should regulate")
@@ -135,7 +136,7 @@ func TestTwoRedLEDsAreOneTooManyForSevenVoltsOfControlOnTen(t *testing.T) {
 func TestFiveVoltsWithLittleDropAreGoodForAboutThreeVoltsOfControl(t *testing.T) {
 	good := 0.0
 	for control := 1.0; control < 4.5; control += 0.1 {
-		s := check(t, bench(t, 5, 1, "red-5mm", follower(control, 2200, 1000))).Strings[0]
+		s := check(t, bench(t, 5, 1, "red-5mm", follower(control, 2200))).Strings[0]
 		if s.Current.Typ > 0.95*control/1000 {
 			good = control
 		}

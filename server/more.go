@@ -61,8 +61,7 @@ func breakdowns(ctx context.Context, in web.MoreInput) (map[int]calc.HeadroomBre
 			return nil, err
 		}
 		d, err := calc.Breakdown(in.Build, i)
-		var unsolved *calc.Unsolved
-		if errors.As(err, &unsolved) {
+		if _, unsolved := errors.AsType[*calc.Unsolved](err); unsolved {
 			continue
 		}
 		if err != nil {

@@ -77,12 +77,10 @@ func (j *scatterJobs) start(build int64, job *scatterJob) error {
 	ctx, cancel := context.WithCancel(j.ctx)
 	job.cancel, job.ended = cancel, make(chan struct{})
 	j.jobs[build] = job
-	j.group.Add(1)
-	go func() {
-		defer j.group.Done()
+	j.group.Go(func() {
 		defer cancel()
 		job.run(ctx)
-	}()
+	})
 	return nil
 }
 

@@ -39,8 +39,8 @@ type CulpritView struct {
 
 // Widths of a culprit's bar, and from where on it is told by name.
 const (
-	culpritWide Px = 130
-	told           = 0.001 // [V]
+	culpritWide = Px(130)
+	told        = 0.001 // [V]
 )
 
 // NewBreakdownView shows the breakdowns of some strings of a build, by index.

@@ -57,8 +57,8 @@ func TestAShortfallStandsBelowZero(t *testing.T) {
 func TestCulpritsAreToldWithTheirSigns(t *testing.T) {
 	s := broken(0.5).Strings[0]
 	type line struct {
-		name, volts, href string
-		gives             bool
+		Name, Volts, Href string
+		Gives             bool
 	}
 	want := []line{
 		{"supply", "−1.00\u00a0V", "#f-supply-voltage", false},
