@@ -7,6 +7,10 @@ import (
 	"lanternbook/calc/quantity"
 )
 
+// largestResistor is the most in ohms that an edit fits, as the reader takes
+// it.
+const largestResistor = 1e9
+
 // fewer takes LEDs away one at a time from the largest stack.
 func (l *line) fewer() []attempt {
 	k := l.largest()
@@ -69,7 +73,7 @@ func (l *line) fewerAtSameCurrent() []attempt {
 		volts += count * l.Net.LEDVoltageAt(l.Stack, j, current)
 	}
 	_, ohms := quantity.Nearest("E24", (l.Net.Voltage(l.Feed)-volts)/current)
-	if !(ohms > 0) {
+	if !(ohms > 0 && ohms <= largestResistor) {
 		return nil
 	}
 	a := l.ledCount(k, n, "one LED fewer")
@@ -103,7 +107,7 @@ func (l *line) senseUp() []attempt {
 	var out []attempt
 	for range mostTries {
 		_, ohms = quantity.Nearest("E24", ohms*1.01)
-		if math.IsNaN(ohms) {
+		if math.IsNaN(ohms) || ohms > largestResistor {
 			break
 		}
 		out = append(out, l.setSense(ohms, roleWords(role)+" "+ohmic(ohms)))

@@ -270,7 +270,7 @@ func (l *line) headroom(volts, ohms float64) (leftOver, error) {
 	net := l.Net
 	if l.Edge == nil {
 		across := net.Voltage(l.Tail)
-		return leftOver{headroom: across, full: net.LEDCurrent(l.Stack), feed: net.Voltage(l.Feed), need: across, sense: across}, nil
+		return leftOver{headroom: across, full: math.Max(0, net.LEDCurrent(l.Stack)), feed: net.Voltage(l.Feed), need: across, sense: across}, nil
 	}
 	l.Save(&l.saved)
 	defer l.Load(&l.saved)

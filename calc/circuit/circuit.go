@@ -383,7 +383,8 @@ func (c *Circuit) Spread(id BJTID, gain, vbe float64) {
 		vt := device.ThermalVoltage(device.NominalC) * q.typical.Nf
 		shift := math.Exp(-vbe / vt)
 		q.par.Is *= shift
-		q.par.Ise *= shift
+		// The leakage follows its own slope, so that the gain stays.
+		q.par.Ise *= math.Exp(-vbe / (device.ThermalVoltage(device.NominalC) * q.typical.Ne))
 	}
 	q.fresh = false
 }
