@@ -32,9 +32,9 @@ const (
 	// restVolts is the last step of a Newton search that is taken as its end.
 	// Convergence is quadratic: the error that remains is of the order of its
 	// square over the thermal voltage, some 1e-9 V.
-	restVolts = 1e-5
+	restVolts = 1e-7
 	// restKelvin is the same for temperatures.
-	restKelvin = 1e-2
+	restKelvin = 1e-3
 	// patience is the number of Newton steps before another way is tried.
 	patience = 60
 	// leak is the conductance in siemens from every node to the return that
