@@ -53,6 +53,7 @@ func TestFindingByKeyboard(t *testing.T) {
 	b.wait("the first card", at+` === `+quote(first))
 	b.press(kb.Enter)
 	b.wait("the build's page", `location.pathname.startsWith("/builds/")`)
+	b.wait("its scripts", `document.readyState === "complete"`)
 	b.press("/")
 	b.wait("the search field of the top bar to have the focus", `document.activeElement.name === "q"`)
 }

@@ -36,6 +36,7 @@ func TestABuildIsMadeAndMendedWithoutScripts(t *testing.T) {
 	b.reach("button", "cold, low supply")
 	b.press(kb.Enter)
 	b.wait("the cold picture", `document.querySelector("[name=corner][value=cold]").getAttribute("aria-pressed") === "true"`)
+	b.wait("the whole page", `document.readyState === "complete"`)
 	b.picture("cold, without scripts")
 
 	b.allow("422") // the answer to a form with a wrong field
