@@ -17,7 +17,7 @@ var pdfPage = regexp.MustCompile(`/Type\s*/Page\b[^s]`)
 const paper = 680 // [px]
 
 // manyStrings puts a build of twenty strings on the shelf and gives its page.
-const manyStrings = `fetch("/api/builds/2").then(r => r.json()).then(d => {
+const manyStrings = `fetch("/api/builds?q=arcade").then(r => r.json()).then(l => fetch("/api/builds/" + l.builds[0].id)).then(r => r.json()).then(d => {
 	d.title = "Twenty strings";
 	d.strings = Array.from({length: 20}, (_, i) => ({...d.strings[0], label: "S" + (i + 1)}));
 	return fetch("/api/builds", {method: "POST", headers: {"Content-Type": "application/json"}, body: JSON.stringify(d)});
