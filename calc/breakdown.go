@@ -78,8 +78,8 @@ const (
 //
 // It returns the errors of Check, and Invalid where there is no string i.
 //
-// Source: derivation; for joint effects of pairs the average is the Shapley
-// value (shapley 1953, from memory).
+// Source: derivation; shapley (1953), whose value the average is where effects
+// are joint in pairs at most.
 func Breakdown(b Build, i int) (HeadroomBreakdown, error) {
 	if i < 0 || i >= len(b.Strings) {
 		return HeadroomBreakdown{}, Invalid{{fmt.Sprintf("/strings/%d", i), "there is no such string"}}

@@ -19,6 +19,7 @@ type plant struct {
 	runAt   map[string]int // index in the tree by a run's id
 	runOf   []int          // index in build.Runs by that in the tree
 	wires   []conductor
+	paths   []float64 // [Ω] from the ideal source to each run's far end
 	loads   []wiring.Load
 	result  wiring.Result
 }
@@ -155,11 +156,26 @@ func (p *plant) heatWires(celsius float64) {
 		}
 		p.tree.Ohms[k] = 2 * p.build.Runs[i].Length * perMetre
 	}
+	// A run's path is its parent's and itself; the supply's own stands last.
+	n := len(p.runOf)
+	if len(p.paths) != n+1 {
+		p.paths = make([]float64, n+1)
+	}
+	p.paths[n] = p.tree.Source
+	at := func(run int) float64 {
+		if run < 0 {
+			return p.paths[n]
+		}
+		return p.paths[run]
+	}
+	for k, parent := range p.tree.Parent {
+		p.paths[k] = at(parent) + p.tree.Ohms[k]
+	}
 	for _, l := range p.strings {
-		l.path = p.tree.PathOhms(l.run) * l.quantity
+		l.path = at(l.run) * l.quantity
 	}
 	for _, r := range p.rails {
-		r.path = p.tree.PathOhms(r.run)
+		r.path = at(r.run)
 	}
 }
 

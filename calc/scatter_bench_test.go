@@ -2,6 +2,7 @@ package calc_test
 
 import (
 	"fmt"
+	"sync"
 	"testing"
 
 	"lanternbook/calc"
@@ -41,6 +42,56 @@ func BenchmarkScatter(b *testing.B) {
 				}
 			}
 			b.ReportMetric(float64(b.Elapsed().Microseconds())/float64(b.N*samples), "µs/sample")
+		})
+	}
+}
+
+// The same in two halves at once, as a server on two cores does it.
+func BenchmarkScatterInHalves(b *testing.B) {
+	const samples = 10000
+	build := sharedRail(24)
+	for b.Loop() {
+		var halves [2]calc.ScatterResult
+		var errs [2]error
+		var both sync.WaitGroup
+		for k := range halves {
+			both.Go(func() {
+				halves[k], errs[k] = calc.ScatterPart(build, calc.Sampling{Samples: samples, Seed: 1, Part: k, Parts: 2}, nil)
+			})
+		}
+		both.Wait()
+		for _, err := range errs {
+			if err != nil {
+				b.Fatal(err)
+			}
+		}
+		if _, err := halves[0].Merge(halves[1]); err != nil {
+			b.Fatal(err)
+		}
+	}
+	b.ReportMetric(float64(b.Elapsed().Microseconds())/float64(b.N*samples), "µs/sample")
+}
+
+func BenchmarkBreakdown(b *testing.B) {
+	build := sharedRail(24)
+	for b.Loop() {
+		if _, err := calc.Breakdown(build, 23); err != nil {
+			b.Fatal(err)
+		}
+	}
+}
+
+func BenchmarkDial(b *testing.B) {
+	for _, c := range []struct {
+		name, where string
+		build       calc.Build
+	}{{"string", "/strings/0", withPot(0.4)}, {"rail of 24", "/rails/0", sharedRail(24)}} {
+		b.Run(c.name, func(b *testing.B) {
+			for b.Loop() {
+				if _, err := calc.Dial(c.build, c.where); err != nil {
+					b.Fatal(err)
+				}
+			}
 		})
 	}
 }

@@ -132,6 +132,7 @@ type wilsonCase struct {
 	source        string
 }
 
+// Source: newcombe (1998), table I, method 3.
 func TestWilson(t *testing.T) {
 	const newcombe = "newcombe (1998), table I, method 3, from memory"
 	for _, c := range []wilsonCase{

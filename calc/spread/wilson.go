@@ -12,11 +12,11 @@ const normal = 1.959963984540054
 // certainty, from so many that passed of those tried. It keeps its meaning
 // where none or all passed; with none tried it is everything. Points of a
 // Latin hypercube scatter less than independent ones, so that for them it is
-// if anything too wide (stein 1987).
+// if anything too wide.
 //
 //	(p + z²/2n ± z·sqrt(p(1−p)/n + z²/4n²)) / (1 + z²/n)
 //
-// Source: wilson (1927).
+// Source: wilson (1927); stein (1987), for a hypercube's scatter.
 func Wilson(passed, tried int) (low, high float64) {
 	if tried <= 0 {
 		return 0, 1
