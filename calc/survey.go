@@ -23,7 +23,7 @@ type Failures struct {
 
 // Matter returns the failures that matter: something leaves its limits, or
 // other strings change by more than a tenth, or nobody can tell.
-func (f *Failures) Matter() []Failure {
+func (f Failures) Matter() []Failure {
 	n := 0
 	for n < len(f.All) && f.All[n].Matters {
 		n++
@@ -67,6 +67,9 @@ type Failure struct {
 	Others   []Change `json:"others,omitempty"`
 	Most     float64  `json:"most"` // [1] of the current it has without the fault
 	Remedies []Remedy `json:"remedies,omitempty"`
+
+	trial trial
+	tells string // what comes of it, in words
 }
 
 // LEDReading is what a meter reads across the LEDs of one part.
@@ -119,6 +122,11 @@ const (
 // reference and the control wrong; likewise for the rails; and the supply at
 // half and at five quarters of its voltage. Everything else is typical.
 //
+// For the failures that matter it then tries edits of the design, and keeps
+// those that cure them or make them clearly milder: a resistor in each base on
+// a rail, a resistor of a higher rating, an LED more, or fewer with a resistor,
+// less current. In a large build only the worst failures are tried.
+//
 // progress, when not nil, is called after each with how many are done; the
 // survey stops when it returns false, and what was found until then is
 // returned. The errors are those of Check, for the build without a fault.
@@ -130,16 +138,19 @@ func Survey(b Build, progress func(done, total int) bool) (Failures, error) {
 	out := Failures{All: []Failure{}, Assumed: s.assumed, Missing: s.missing}
 	trials := s.trials()
 	out.Total = len(trials)
-	for _, t := range trials {
-		if f, ok := s.try(t); ok {
+	goOn := func() bool { return progress == nil || progress(out.Tried, out.Total) }
+	going := true
+	for k := 0; k < len(trials) && going; k++ {
+		if f, ok := s.try(trials[k], nil); ok {
 			out.All = append(out.All, f)
 		}
 		out.Tried++
-		if progress != nil && !progress(out.Tried, out.Total) {
-			break
-		}
+		going = goOn()
 	}
 	out.rank()
+	if going {
+		s.cure(&out, goOn)
+	}
 	return out, nil
 }
 

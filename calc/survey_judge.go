@@ -153,12 +153,12 @@ func (s *surveyor) judge(f *Failure, t trial) {
 	if l := s.lines[n]; l != nil {
 		at, h := &s.lineAt[n], &s.madeHome
 		s.measure(l, at.cold, h.limits)
+		limits := h.limits
 		if t.kind == fault.LED && l.LEDs[t.device].Count == 1 {
-			h.limits = slices.DeleteFunc(slices.Clone(h.limits), func(m limit) bool { return m.device == t.device })
+			limits = slices.DeleteFunc(slices.Clone(limits), func(m limit) bool { return m.device == t.device })
 		}
-		s.beyond(f, &l.Board, l.where(), h.limits)
-		h.limits = append(h.limits[:0:0], s.homes[l.index].limits...)
-		f.Current, f.Was = l.Net.LEDCurrent(l.Stack), s.homes[l.index].current
+		s.beyond(f, &l.Board, l.where(), limits)
+		f.Current, f.Was = l.Net.LEDCurrent(l.Stack), h.current
 		f.Runaway = at.cold && !h.at.cold
 	}
 	for _, j := range s.scope {

@@ -33,9 +33,8 @@ type surveyor struct {
 	all    []int // every string
 	scope  []int // the strings that a fault can reach, its own not among them
 
-	patientOf int // the string whose patient is made; −1 before
-	made      *line
-	madeHome  home
+	made     *line // the last patient
+	madeHome home
 
 	assumed, missing []string
 	said             map[string]bool
@@ -99,7 +98,7 @@ func newSurveyor(b *Build) (*surveyor, error) {
 	if err != nil {
 		return nil, err
 	}
-	s := &surveyor{p: p, volts: b.Supply.Voltage.Typ, air: air, coupled: p.coupled(), patientOf: -1, said: map[string]bool{}}
+	s := &surveyor{p: p, volts: b.Supply.Voltage.Typ, air: air, coupled: p.coupled(), said: map[string]bool{}}
 	for _, l := range p.strings {
 		s.ready(&l.Board)
 		l.Meter()
@@ -151,17 +150,9 @@ const assumedBreakdown = 7.0
 // keepHome keeps the build's solution without a fault.
 func (s *surveyor) keepHome() {
 	s.homes = make([]home, len(s.lines))
-	for j, l := range s.p.strings {
-		h := &s.homes[j]
+	for j := range s.p.strings {
 		s.lineAt[j].touched = false
-		h.at, h.current = s.lineAt[j], l.Net.LEDCurrent(l.Stack)
-		h.power = l.Power(l.Devices[l.Holder])
-		h.limits = s.limitsOf(l)
-		s.measure(l, s.lineAt[j].cold, h.limits)
-		for k := range h.limits {
-			h.limits[k].home = h.limits[k].value
-		}
-		l.Save(&h.state)
+		s.keep(&s.homes[j], j)
 	}
 	s.railHomes = make([]railHome, len(s.p.rails))
 	for k, r := range s.p.rails {
@@ -220,18 +211,21 @@ func (s *surveyor) lineHome(j int, h *home) {
 	*at = h.at
 }
 
-// patient returns the one of string i that gets the faults, alike and solved
-// in its place.
-func (s *surveyor) patient(i int) error {
+// patient puts in the one of string i that gets the faults, alike and solved in
+// its place. With spec it is made by that instead, as an edit would have it.
+func (s *surveyor) patient(i int, spec *String) error {
 	n := len(s.lines) - 1
 	l := s.p.strings[i]
-	if s.patientOf == i {
+	l.quantity = float64(l.spec.Quantity) - 1
+	if spec == nil {
+		spec = l.spec
+	}
+	if s.made != nil && s.made.index == i && s.made.spec == spec {
 		s.lines[n] = s.made
 		s.lineAt[n] = s.madeHome.at
-		l.quantity = float64(l.spec.Quantity) - 1
 		return nil
 	}
-	sick := &line{index: i, spec: l.spec, quantity: 1, run: l.run, rail: l.rail}
+	sick := &line{index: i, spec: spec, quantity: 1, run: l.run, rail: l.rail}
 	if err := sick.assemble(s.p.build); err != nil {
 		return err
 	}
@@ -244,25 +238,35 @@ func (s *surveyor) patient(i int) error {
 	if sick.rail != nil {
 		sick.Net.Hold(sick.Rail, sick.rail.volts)
 	}
-	s.lines[n], s.made, s.patientOf = sick, sick, i
+	s.lines[n], s.made = sick, sick
 	s.lineAt[n] = straightLine{cold: s.homes[i].at.cold}
-	l.quantity = float64(l.spec.Quantity) - 1
 	if err := s.solveLine(n, s.homes[i].at.feed); err != nil {
+		s.made = nil
 		return err
 	}
 	s.lineAt[n].touched = false
-	h := &s.madeHome
-	h.at, h.current = s.lineAt[n], s.homes[i].current
-	h.limits = append(h.limits[:0], s.homes[i].limits...)
-	sick.Save(&h.state)
+	s.keep(&s.madeHome, n)
 	return nil
+}
+
+// keep keeps a string's solution without a fault.
+func (s *surveyor) keep(h *home, j int) {
+	l := s.lines[j]
+	h.at, h.current = s.lineAt[j], l.Net.LEDCurrent(l.Stack)
+	h.power = l.Power(l.Devices[l.Holder])
+	h.limits = s.limitsOf(l)
+	s.measure(l, h.at.cold, h.limits)
+	for k := range h.limits {
+		h.limits[k].home = h.limits[k].value
+	}
+	l.Save(&h.state)
 }
 
 // discharge takes the patient out.
 func (s *surveyor) discharge() {
 	n := len(s.lines) - 1
 	if s.lines[n] != nil {
-		l := s.p.strings[s.patientOf]
+		l := s.p.strings[s.lines[n].index]
 		l.quantity = float64(l.spec.Quantity)
 	}
 	s.lines[n] = nil

@@ -8,10 +8,12 @@ import (
 	"lanternbook/calc/fault"
 )
 
-// try solves the build with one fault and comes home again. ok is false where
-// the fault changes nothing at all, since it lies between points that are held.
-func (s *surveyor) try(t trial) (f Failure, ok bool) {
+// try solves the build with one fault and comes home again. With spec, the
+// string that has it is made by that. ok is false where the fault changes
+// nothing at all, since it lies between points that are held.
+func (s *surveyor) try(t trial, spec *String) (f Failure, ok bool) {
 	f = s.failure(t)
+	f.trial = t
 	volts, air := s.volts, s.air
 	s.reach(t)
 	defer func() {
@@ -20,7 +22,7 @@ func (s *surveyor) try(t trial) (f Failure, ok bool) {
 		s.discharge()
 	}()
 	if t.line >= 0 {
-		if err := s.patient(t.line); err != nil {
+		if err := s.patient(t.line, spec); err != nil {
 			f.Unsolved, f.Matters = reason(err), true
 			f.Text = s.sentence(&f, t)
 			return f, true

@@ -42,7 +42,7 @@ func (s *surveyor) sentence(f *Failure, t trial) string {
 	if l := s.lines[len(s.lines)-1]; l != nil {
 		add(becomes(f.Current, f.Was))
 		add(s.takenFromRail(l))
-		add(s.heated(&l.Board, l.Holder, s.homes[l.index].power, "its ", t))
+		add(s.heated(&l.Board, l.Holder, s.madeHome.power, "its ", t))
 	}
 	for _, c := range f.Rails {
 		add(s.railMoved(&c))
@@ -58,7 +58,8 @@ func (s *surveyor) sentence(f *Failure, t trial) string {
 	}
 	add(s.tooMuch(f))
 	add(s.othersChange(f, t))
-	return head + strings.Join(told, "; ")
+	f.tells = strings.Join(told, "; ")
+	return head + f.tells
 }
 
 // becomes says what a string's light does.

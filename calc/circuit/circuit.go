@@ -221,6 +221,7 @@ type ledStack struct {
 	limited  bool
 	runaway  bool
 	instead  float64 // [Ω] in the place of an LED that was taken out
+	empty    bool    // it was the only one
 	ieff, ge float64 // linearised current and conductance
 	vab      float64
 	dvdx     float64

@@ -38,13 +38,17 @@ func (c *Circuit) TakeLED(id LEDsID, k int, ohms float64) {
 	s := &c.stacks[id]
 	s.count[k]--
 	s.instead = ohms
+	s.empty = true
+	for _, n := range s.count {
+		s.empty = s.empty && n == 0
+	}
 }
 
 // PutLED puts the LED of type k back that TakeLED took.
 func (c *Circuit) PutLED(id LEDsID, k int) {
 	s := &c.stacks[id]
 	s.count[k]++
-	s.instead = 0
+	s.instead, s.empty = 0, false
 }
 
 // InsteadVoltage returns the voltage in volts across what TakeLED put in an

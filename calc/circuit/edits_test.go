@@ -142,3 +142,27 @@ func TestAReferenceOfOneWayGivesNothing(t *testing.T) {
 		}
 	}
 }
+
+// A string of one LED that is shorted is its resistor alone, an open one the
+// meter's path; either is undone.
+func TestTheOnlyLEDIsTakenOut(t *testing.T) {
+	c := circuit.New()
+	feed, tail := c.Held("feed", 12), c.Node("tail")
+	leds := c.LEDs(feed, tail, whites(), []int{1})
+	c.Resistor(tail, circuit.Ground, 1000)
+	current := func() float64 {
+		t.Helper()
+		if err := c.Solve(); err != nil {
+			t.Fatal(err)
+		}
+		return c.LEDCurrent(leds)
+	}
+	sound := current()
+	c.TakeLED(leds, 0, circuit.ShortOhms)
+	near(t, "shorted", current(), 12/(1000+circuit.ShortOhms), 1e-9)
+	c.PutLED(leds, 0)
+	near(t, "back", current(), sound, 1e-9)
+	c.TakeLED(leds, 0, circuit.MeterOhms)
+	near(t, "open", current(), 12/(1000+circuit.MeterOhms), 1e-10)
+	near(t, "across the open one", c.InsteadVoltage(leds), 12, 2e-3)
+}

@@ -8,6 +8,13 @@ import (
 
 // step prepares the stack's linear stand-in at the present node voltages.
 func (s *ledStack) step(air, vab float64) {
+	if s.empty {
+		s.vab, s.miss, s.dvdx = vab, 0, 1
+		s.ge = 1 / s.instead
+		s.ieff = vab * s.ge
+		s.current = s.ieff
+		return
+	}
 	lead := &s.leds[s.lead]
 	nvt := lead.Slope()
 	e := math.Exp(min(s.x/nvt, hottest))
@@ -52,6 +59,10 @@ const (
 // settle moves the stack's own unknown after the nodes have moved, and returns
 // how far in volts.
 func (s *ledStack) settle(vab float64) float64 {
+	if s.empty {
+		s.current, s.limited = vab*s.ge, false
+		return 0
+	}
 	lead := &s.leds[s.lead]
 	next := s.x + (s.miss+vab-s.vab)/s.dvdx
 	s.current = s.ieff + s.ge*(vab-s.vab)
