@@ -6,31 +6,18 @@ import (
 	"strings"
 	"testing"
 
-	jsonpatch "github.com/evanphx/json-patch/v5"
-
 	"lanternbook/calc"
 	"lanternbook/calc/fault"
 )
 
-// patched applies a remedy's patch to the build's document and reads it again.
-func patched(t *testing.T, b calc.Build, r calc.Remedy) calc.Build {
+// cured is the build with a remedy's patch, read again.
+func cured(t *testing.T, b calc.Build, r calc.Remedy) calc.Build {
 	t.Helper()
 	document, err := json.Marshal(b)
 	if err != nil {
 		t.Fatal(err)
 	}
-	operations, err := json.Marshal(r.Patch)
-	if err != nil {
-		t.Fatal(err)
-	}
-	patch, err := jsonpatch.DecodePatch(operations)
-	if err != nil {
-		t.Fatal(err)
-	}
-	if document, err = patch.Apply(document); err != nil {
-		t.Fatalf("%s: %v", r.Text, err)
-	}
-	out, err := calc.Read(document)
+	out, err := calc.Read(patched(t, document, r.Patch))
 	if err != nil {
 		t.Fatalf("%s: %v", r.Text, err)
 	}
@@ -68,7 +55,7 @@ func TestEveryRemedyDoesWhatItSays(t *testing.T) {
 				}
 				for _, r := range f.Remedies {
 					offered++
-					edited := patched(t, b, r)
+					edited := cured(t, b, r)
 					key, err := json.Marshal(edited)
 					if err != nil {
 						t.Fatal(err)
@@ -116,7 +103,7 @@ func TestAResistorInEachBaseTamesAnOpenLED(t *testing.T) {
 	if len(r.Patch) != 4 {
 		t.Errorf("the patch has %d steps, want one for each string", len(r.Patch))
 	}
-	if g := failing(t, survey(t, patched(t, b, r)), "string 2", "led_white", fault.Open); g.Matters {
+	if g := failing(t, survey(t, cured(t, b, r)), "string 2", "led_white", fault.Open); g.Matters {
 		t.Errorf("still: %s", g.Text)
 	}
 	// With the resistors there, larger ones replace them.
