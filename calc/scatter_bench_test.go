@@ -11,7 +11,8 @@ import (
 // sharedRail is a sign as shops build it: n strings of six whites on 24 V, all
 // bases on one rail that a follower drives from a trimmed voltage, each string
 // on its own stretch of cable.
-func sharedRail(n int) calc.Build {
+func sharedRail() calc.Build {
+	const n = 24
 	v := calc.Spread{Min: 2.15, Typ: 2.2, Max: 2.25}
 	b := followerRail(calc.Control{Volts: &v})
 	b.Rails[0].FedBy = ""
@@ -34,7 +35,7 @@ func sharedRail(n int) calc.Build {
 func BenchmarkScatter(b *testing.B) {
 	for _, samples := range []int{1000, 10000} {
 		b.Run(fmt.Sprintf("samples=%d", samples), func(b *testing.B) {
-			build := sharedRail(24)
+			build := sharedRail()
 			b.ReportAllocs()
 			for b.Loop() {
 				if _, err := calc.Scatter(build, samples, 1, nil); err != nil {
@@ -49,7 +50,7 @@ func BenchmarkScatter(b *testing.B) {
 // The same in two halves at once, as a server on two cores does it.
 func BenchmarkScatterInHalves(b *testing.B) {
 	const samples = 10000
-	build := sharedRail(24)
+	build := sharedRail()
 	for b.Loop() {
 		var halves [2]calc.ScatterResult
 		var errs [2]error
@@ -73,7 +74,7 @@ func BenchmarkScatterInHalves(b *testing.B) {
 }
 
 func BenchmarkBreakdown(b *testing.B) {
-	build := sharedRail(24)
+	build := sharedRail()
 	for b.Loop() {
 		if _, err := calc.Breakdown(build, 23); err != nil {
 			b.Fatal(err)
@@ -85,7 +86,7 @@ func BenchmarkDial(b *testing.B) {
 	for _, c := range []struct {
 		name, where string
 		build       calc.Build
-	}{{"string", "/strings/0", withPot(0.4)}, {"rail of 24", "/rails/0", sharedRail(24)}} {
+	}{{"string", "/strings/0", withPot(0.4)}, {"rail of 24", "/rails/0", sharedRail()}} {
 		b.Run(c.name, func(b *testing.B) {
 			for b.Loop() {
 				if _, err := calc.Dial(c.build, c.where); err != nil {
