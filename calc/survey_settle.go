@@ -21,7 +21,7 @@ const (
 	// and rail agree.
 	surveyRest = 1e-6
 	// nearAir is the step in kelvin at which a can's air counts as at rest.
-	nearAir = 0.1
+	nearAir = 0.02
 )
 
 // settleAir settles the build, and in a sealed can its air with it. What burns

@@ -255,6 +255,9 @@ func TestAFaultIsTheBuildItMakes(t *testing.T) {
 		cable.Runs[i].OhmsPerMetre = &ohms
 	}
 	cable.Supply.Voltage = calc.Exactly(26)
+	sealed := cable
+	area, transfer := 0.05, 8.0
+	sealed.Enclosure = &calc.Enclosure{Kind: "sealed", SurfaceArea: &area, HeatTransfer: &transfer}
 	rails := onRails(12, 100)
 	rails.Supply.SourceResistance = 0.5
 	control := calc.Exactly(4.4)
@@ -267,6 +270,10 @@ func TestAFaultIsTheBuildItMakes(t *testing.T) {
 			{"control doubled", "string 3", "control", fault.Doubled, func(b *calc.Build) { b.Strings[3].Driver.FollowerSink.Control.Volts = &control }},
 			{"LED shorted", "string 11", "led_white", fault.Shorted, func(b *calc.Build) { b.Strings[11].LEDs[0].Quantity = 5 }},
 			{"supply up", "supply", "supply", fault.QuarterUp, func(b *calc.Build) { b.Supply.Voltage = calc.Exactly(32.5) }},
+		}},
+		{sealed, []sameAs{
+			{"supply up, and with it the air in the can", "supply", "supply", fault.QuarterUp, func(b *calc.Build) { b.Supply.Voltage = calc.Exactly(32.5) }},
+			{"LED shorted in the can", "string 11", "led_white", fault.Shorted, func(b *calc.Build) { b.Strings[11].LEDs[0].Quantity = 5 }},
 		}},
 		{rails, []sameAs{
 			{"sense ten times too small", "string 8", "sense_resistor", fault.Tenth, func(b *calc.Build) { b.Strings[7].Driver.RailSink.Sense.Ohms /= 10 }},
@@ -319,6 +326,48 @@ func TestAFaultIsTheBuildItMakes(t *testing.T) {
 				}
 				near(t, "supply", f.Supply, want.Supply.Current.Typ, 2e-4*want.Supply.Current.Typ)
 			})
+		}
+	}
+}
+
+// A short that asks more of the supply than it has is told first of all.
+func TestAnOverloadedSupplyIsTold(t *testing.T) {
+	f := failing(t, survey(t, fourOnARail(true, 0)), "rail main", "pulldown_resistor", fault.Shorted)
+	for _, o := range f.Over {
+		if o.Role == "supply" {
+			near(t, "limit", o.Limit, 1, 0)
+			if !(o.Value > 1) || !strings.Contains(f.Text, "the supply") {
+				t.Errorf("%.3g A: %s", o.Value, f.Text)
+			}
+			return
+		}
+	}
+	t.Errorf("the supply is not among what leaves its limits: %s", f.Text)
+}
+
+// The sentence says what the person sees, what takes the blow, and what
+// becomes of the rest, each with its number.
+func TestTheSentenceTellsTheWholeStory(t *testing.T) {
+	all := survey(t, railTable(true, 0, 6))
+	for _, c := range []struct {
+		where, role string
+		how         fault.How
+		words       []string
+	}{
+		{"string 2", "led_white", fault.Open, []string{
+			"string 2: one LED open: dark", "its transistor takes 39.1\u00a0mA from the rail", "the follower heats from 34.9\u00a0mW to 0.862\u00a0W",
+			"too much for the follower of rail main (0.862\u00a0W of 0.590\u00a0W)", "the other strings lose 4\u00a0%",
+		}},
+		{"string 2", "led_white", fault.Shorted, []string{"its light stays", "its transistor heats from 0.196\u00a0W", "the other strings stay as they are"}},
+		{"string 2", "sense_resistor", fault.TenTimes, []string{"sense resistor ten times too large", "dim, 4.30\u00a0mA instead of 41.6\u00a0mA"}},
+		{"rail main", "reference", fault.Shorted, []string{"the rail falls to nothing", "the strings go dark"}},
+		{"rail main", "pulldown_resistor", fault.Open, []string{"the strings keep their light"}},
+	} {
+		text := failing(t, all, c.where, c.role, c.how).Text
+		for _, words := range c.words {
+			if !strings.Contains(text, words) {
+				t.Errorf("%q is not in: %s", words, text)
+			}
 		}
 	}
 }
